@@ -1,0 +1,1 @@
+"""Terrain line-of-sight profiler: does one point see another over real ground."""

@@ -1,0 +1,1 @@
+"""Geodesics, curvature and refraction."""

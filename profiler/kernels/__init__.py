@@ -1,0 +1,1 @@
+"""Plain formulas and loops on scalars and arrays, below every object."""

@@ -1,0 +1,51 @@
+"""Frozen value objects that pass between the rooms; data only, checked once."""
+
+from profiler.model.arrays import BoolArray, FloatArray, IntArray
+from profiler.model.question import Air, Point, Station
+from profiler.model.result import (
+    Bending,
+    EndReport,
+    Needed,
+    Note,
+    OtherGround,
+    Place,
+    Shown,
+    SightLine,
+    Stretch,
+    Target,
+    Verdict,
+    VoidStretch,
+)
+from profiler.model.terrain import (
+    DemKind,
+    GeodesicPath,
+    Interpolation,
+    PathProfile,
+    SourceFile,
+)
+
+__all__ = [
+    "Air",
+    "Bending",
+    "BoolArray",
+    "DemKind",
+    "EndReport",
+    "FloatArray",
+    "GeodesicPath",
+    "IntArray",
+    "Interpolation",
+    "Needed",
+    "Note",
+    "OtherGround",
+    "PathProfile",
+    "Place",
+    "Point",
+    "Shown",
+    "SightLine",
+    "SourceFile",
+    "Station",
+    "Stretch",
+    "Target",
+    "Verdict",
+    "VoidStretch",
+]

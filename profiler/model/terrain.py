@@ -1,0 +1,104 @@
+"""The path, the ground along it and the files the ground came from."""
+
+from dataclasses import dataclass
+from enum import StrEnum
+
+from profiler.model.arrays import FloatArray, IntArray, frozen, frozen_int
+from profiler.model.question import Point
+
+
+class Interpolation(StrEnum):
+    """How ground between posts is made."""
+
+    BILINEAR = "bilinear"
+    """The bilinear surface through the four posts around."""
+    HIGHEST = "highest"
+    """The highest of the four posts around: the cautious choice."""
+    NEAREST = "nearest"
+    """The nearest post."""
+
+
+class DemKind(StrEnum):
+    """What surface an elevation model shows."""
+
+    BARE = "bare"
+    """The ground without trees and buildings."""
+    SURFACE = "surface"
+    """Tree tops and roofs included."""
+    UNKNOWN = "unknown"
+    """Nobody said."""
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class GeodesicPath:
+    """The WGS84 geodesic between two points, with the one radius used along it."""
+
+    start: Point
+    """The eye's end."""
+    end: Point
+    """The target's end."""
+    length_m: float
+    """Length of the geodesic [m]."""
+    azimuth_deg: float
+    """Bearing at the start towards the end [deg], 0 to 360 from north clockwise."""
+    back_azimuth_deg: float
+    """Bearing at the end towards the start [deg], 0 to 360."""
+    radius_m: float
+    """Euler radius of curvature along the path at its midpoint [m]."""
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class SourceFile:
+    """One elevation file that gave ground to the path."""
+
+    name: str
+    """File name without its folder."""
+    bytes: int
+    """Size of the file."""
+    sha256: str | None
+    """Hash of the file's bytes; None for a large file not asked for."""
+    crs: str
+    """Authority code of the CRS, or its name."""
+    cell_m: tuple[float, float]
+    """Ground distance between posts, down a column and along a row [m]."""
+
+
+@dataclass(frozen=True, slots=True, kw_only=True, eq=False)
+class PathProfile:
+    """Ground along one path, exact between its samples.
+
+    The path is cut into pieces at every row and column of posts. A piece has three
+    samples, at its two ends and midway; through them the ground is a quadratic in
+    distance, which for bilinear ground is the surface itself. Neighbouring pieces
+    share a sample where the ground is continuous and have one each where it steps.
+    """
+
+    dist_m: FloatArray
+    """(n,) distance from the eye's end, never falling; steps repeat a distance."""
+    ground_m: FloatArray
+    """(n,) elevation above the DEM's datum; NaN where there is none."""
+    piece_start: IntArray
+    """(k,) index i of each piece's first sample; it owns samples i, i+1 and i+2."""
+    source: IntArray
+    """(n,) index into ``files``; −1 where no file gives ground."""
+    length_m: float
+    """Length of the path [m]."""
+    files: tuple[SourceFile, ...]
+    """The files that gave ground, in the order of ``source``."""
+    interpolation: Interpolation
+    """How ground between posts was made."""
+    dem_kind: DemKind
+    """What surface the files show, as stated."""
+    vertical_unit: str
+    """Unit of the files' heights: m, ft or us-ft; several joined by a comma."""
+    sea_level_m: float | None
+    """Height given to sea voids on request [m]; None when voids stay voids."""
+    sea_filled_m: float
+    """Length of path that got that height [m]."""
+
+    def __post_init__(self) -> None:
+        """Freeze the arrays."""
+        object.__setattr__(self, "dist_m", frozen(self.dist_m))
+        object.__setattr__(self, "ground_m", frozen(self.ground_m))
+        object.__setattr__(self, "piece_start", frozen_int(self.piece_start))
+        object.__setattr__(self, "source", frozen_int(self.source))

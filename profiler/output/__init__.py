@@ -1,0 +1,1 @@
+"""Tellings of one result: record, words, figure, map, exchange."""

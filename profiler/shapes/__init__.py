@@ -1,0 +1,1 @@
+"""Points read from and written to files of places."""

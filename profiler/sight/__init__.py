@@ -1,0 +1,1 @@
+"""The sight line over a path profile: margins, verdict, what would flip it."""

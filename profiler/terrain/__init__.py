@@ -1,0 +1,1 @@
+"""The elevation model: open, inspect, sample along a path."""
