@@ -62,7 +62,7 @@ class Station:
                 msg = f"A height must be a finite number of metres, not {value}."
                 raise InputError(msg)
         if self.agl_m is not None and self.agl_m < 0.0:
-            msg = f"Height above ground {self.agl_m:g} m is below the ground; use 0 or more."
+            msg = f"Height above ground {self.agl_m:g} m is below 0; use 0 or more."
             raise InputError(msg)
 
 
