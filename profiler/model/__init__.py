@@ -1,12 +1,12 @@
 """Frozen value objects that pass between the rooms; data only, checked once."""
 
 from profiler.model.arrays import BoolArray, FloatArray, IntArray
+from profiler.model.note import Note
 from profiler.model.question import Air, Point, Station
 from profiler.model.result import (
     Bending,
     EndReport,
     Needed,
-    Note,
     OtherGround,
     Place,
     Shown,

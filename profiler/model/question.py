@@ -48,6 +48,8 @@ class Station:
     """Height above the DEM's vertical datum [m]; None when ``agl_m`` is given."""
     surveyed_ground_m: float | None = None
     """Surveyed elevation of the ground [m], used instead of the DEM's; or None."""
+    survey_gap_m: float = 0.0
+    """Both answers are given when survey and DEM differ by more than this [m]."""
 
     def __post_init__(self) -> None:
         """Refuse two heights, none, or one that is no height."""

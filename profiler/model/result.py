@@ -4,6 +4,7 @@ from dataclasses import dataclass
 from enum import StrEnum
 
 from profiler.model.arrays import BoolArray, FloatArray
+from profiler.model.note import Note
 from profiler.model.terrain import GeodesicPath, PathProfile
 
 
@@ -21,14 +22,6 @@ class Shown(StrEnum):
     WHOLE = "whole"
     PART = "part"
     NONE = "none"
-
-
-@dataclass(frozen=True, slots=True, kw_only=True)
-class Note:
-    """A warning or caution: a stable code for scripts, a sentence for people."""
-
-    code: str
-    text: str
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)

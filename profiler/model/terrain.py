@@ -4,6 +4,7 @@ from dataclasses import dataclass
 from enum import StrEnum
 
 from profiler.model.arrays import FloatArray, IntArray, frozen, frozen_int
+from profiler.model.note import Note
 from profiler.model.question import Point
 
 
@@ -95,6 +96,8 @@ class PathProfile:
     """Height given to sea voids on request [m]; None when voids stay voids."""
     sea_filled_m: float
     """Length of path that got that height [m]."""
+    notes: tuple[Note, ...]
+    """What looked wrong with the posts that were read."""
 
     def __post_init__(self) -> None:
         """Freeze the arrays."""

@@ -1,0 +1,90 @@
+"""Parameter types of the command line: text in, values out, click's own refusal."""
+
+from collections.abc import Callable
+from typing import TYPE_CHECKING, Final
+
+import click
+
+from profiler.cli.points import EastingNorthing, LatLon, SiteName, parse_point
+from profiler.cli.quantities import (
+    parse_height,
+    parse_ke,
+    parse_kr,
+    parse_length,
+    parse_n_gradient,
+)
+from profiler.errors import InputError
+
+PointValue = LatLon | EastingNorthing | SiteName
+
+if TYPE_CHECKING:
+    _FloatParam = click.ParamType[float]
+    _PointParam = click.ParamType[PointValue]
+else:  # click before 8.4 cannot be subscripted
+    _FloatParam = _PointParam = click.ParamType
+
+
+class QuantityType(_FloatParam):
+    """A number with or without its unit, brought into SI or a ratio."""
+
+    def __init__(self, name: str, parse: Callable[[str], float]) -> None:
+        """Take the name that help shows and the parser that raises InputError."""
+        self.name = name
+        self._parse = parse
+
+    def convert(
+        self,
+        value: str | float,
+        param: click.Parameter | None,
+        ctx: click.Context | None,
+    ) -> float:
+        """Value in SI, or click's usage error (exit 2) with the parser's sentence."""
+        if not isinstance(value, str):
+            return float(value)
+        try:
+            return self._parse(value)
+        except InputError as error:
+            self.fail(str(error), param, ctx)
+
+
+class PointType(_PointParam):
+    """A point of the Earth, of a grid, or the name of a site.
+
+    Two plain numbers are easting, northing when the parameter named ``crs_param`` was
+    given. Declare that option with ``is_eager=True``, or click reads it too late.
+    """
+
+    name = "point"
+
+    def __init__(self, crs_param: str = "crs") -> None:
+        """Take the name of the parameter that states a CRS."""
+        self.crs_param = crs_param
+
+    def convert(
+        self,
+        value: str | PointValue,
+        param: click.Parameter | None,
+        ctx: click.Context | None,
+    ) -> PointValue:
+        """Place, or click's usage error (exit 2) with the parser's sentence."""
+        if not isinstance(value, str):
+            return value
+        crs_given = ctx is not None and ctx.params.get(self.crs_param) is not None
+        try:
+            return parse_point(value, crs_given=crs_given)
+        except InputError as error:
+            self.fail(str(error), param, ctx)
+
+
+#: 57.1,-4.2 and its relatives.
+POINT: Final = PointType()
+#: 20m, 65ft; metres inside.
+HEIGHT: Final = QuantityType("height", parse_height)
+#: 50m, 12km; metres inside, 0 or more.
+LENGTH: Final = QuantityType("length", parse_length)
+#: 4/3; a ratio above 0.
+KE: Final = QuantityType("ke", parse_ke)
+#: 0.13; a ratio of either sign.
+KR: Final = QuantityType("kr", parse_kr)
+#: -39; N-units a kilometre.
+N_GRADIENT: Final = QuantityType("N/km", parse_n_gradient)

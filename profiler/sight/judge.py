@@ -1,0 +1,346 @@
+"""The one computation: from a question to the sight line and what it means."""
+
+import math
+from typing import NamedTuple
+
+import numpy as np
+
+from profiler.constants import GRAZING_M, VOID_BELOW_M
+from profiler.earth import bend, geodesic_path
+from profiler.errors import InputError
+from profiler.kernels.circle import elevation_tangent
+from profiler.model import (
+    Air,
+    Bending,
+    BoolArray,
+    EndReport,
+    GeodesicPath,
+    OtherGround,
+    PathProfile,
+    Place,
+    SightLine,
+    Station,
+    Stretch,
+    Verdict,
+    VoidStretch,
+)
+from profiler.sight.case import Case, Look, look_at
+from profiler.sight.ends import end_report
+from profiler.sight.ground import ground_of
+from profiler.sight.line import blocked_runs, decisive
+from profiler.sight.needed import needed
+from profiler.sight.notes import cautions_for, warnings_for
+from profiler.sight.outside import check_inside
+from profiler.sight.own_hill import own_hill_radius
+from profiler.sight.places import place_at, stretch_of, void_stretches
+from profiler.sight.target import shown_target
+from profiler.sight.view import front_crest_index, horizon_index, is_seen, rays
+from profiler.terrain import Terrain, sample_path
+
+
+class _Ready(NamedTuple):
+    """A question with everything that it stands on."""
+
+    path: GeodesicPath
+    profile: PathProfile
+    earth: Bending
+    ends: tuple[EndReport, EndReport]
+    case: Case
+    look: Look
+    void: VoidStretch | None
+
+
+def judge(
+    terrain: Terrain,
+    eye: Station,
+    target: Station,
+    *,
+    air: Air | None = None,
+    own_hill_m: float | None = None,
+    ignore_near_m: float = 0.0,
+    void_below_m: float = VOID_BELOW_M,
+) -> SightLine:
+    """Whether one station sees another over a terrain, and what decides it.
+
+    Parameters
+    ----------
+    terrain : Terrain
+    eye, target : Station
+        The observing end and the observed one.
+    air : Air or None
+        Bending of the ray; None: light, kr 0.13.
+    own_hill_m : float or None [m]
+        Radius of a bare summit's own hill; None: the larger of 100 m and 3 cells.
+    ignore_near_m : float [m]
+        Ground this near to either end is not counted.
+    void_below_m : float [m]
+        A void that only higher ground could block counts as clear.
+
+    Returns
+    -------
+    SightLine
+
+    Raises
+    ------
+    InputError
+        If the points are one place or nearer than a cell, or a height is impossible.
+    DemError
+        If a file is damaged; OutsideDemError if an end has no ground.
+    """
+    path = geodesic_path(eye.point, target.point)
+    _check_lengths(path, ignore_near_m, own_hill_m)
+    check_inside(terrain, eye, role="from")
+    check_inside(terrain, target, role="to")
+    profile = sample_path(terrain, path)
+    _check_cell(profile, path)
+    earth = bend(air or Air(), path.radius_m)
+    ends = _ends(eye, target, profile, survey=True)
+    hill_m = 0.0
+    if ends[1].agl_m == 0.0:
+        hill_m = own_hill_radius(terrain, path, own_hill_m)
+    case = _case(path, profile, earth, ends, hill_m=hill_m, near_m=ignore_near_m)
+    ready = _look(path, profile, earth, ends, case, void_below_m)
+    other = None
+    if _survey_matters(eye, ends[0]) or _survey_matters(target, ends[1]):
+        other = _on_dem_ground(eye, target, ready, void_below_m)
+    return _answer(ready, other, void_below_m)
+
+
+def _check_lengths(
+    path: GeodesicPath, ignore_near_m: float, own_hill_m: float | None
+) -> None:
+    for what, value in (("near", ignore_near_m), ("hill", own_hill_m or 0.0)):
+        if not (math.isfinite(value) and value >= 0.0):
+            option = "--ignore-near" if what == "near" else "--own-hill"
+            msg = f"{option} {value:g} m must be 0 or more."
+            raise InputError(msg)
+    if 2.0 * ignore_near_m >= path.length_m:
+        msg = (
+            f"--ignore-near {ignore_near_m:g} m at both ends leaves nothing of a path of "
+            f"{path.length_m:.0f} m. Use less than half of it."
+        )
+        raise InputError(msg)
+
+
+def _check_cell(profile: PathProfile, path: GeodesicPath) -> None:
+    cell = max((side for f in profile.files for side in f.cell_m), default=0.0)
+    if path.length_m < cell:
+        msg = (
+            f"The points are {path.length_m:.1f} m apart, less than one cell "
+            f"({cell:.0f} m) of this DEM: it cannot tell. Use a finer one."
+        )
+        raise InputError(msg)
+
+
+def _ends(
+    eye: Station, target: Station, profile: PathProfile, *, survey: bool
+) -> tuple[EndReport, EndReport]:
+    first, last = (float(profile.ground_m[k]) for k in (0, -1))
+    return (
+        end_report(eye, _known(first), role="from", survey=survey),
+        end_report(target, _known(last), role="to", survey=survey),
+    )
+
+
+def _known(value: float) -> float | None:
+    return value if math.isfinite(value) else None
+
+
+def _survey_matters(station: Station, end: EndReport) -> bool:
+    """Whether the survey differs enough from the DEM for both answers."""
+    if end.ground_from != "surveyed" or end.dem_ground_m is None:
+        return False
+    gap = abs((end.ground_m or 0.0) - end.dem_ground_m)
+    return gap > station.survey_gap_m
+
+
+def _case(
+    path: GeodesicPath,
+    profile: PathProfile,
+    earth: Bending,
+    ends: tuple[EndReport, EndReport],
+    *,
+    hill_m: float,
+    near_m: float,
+) -> Case:
+    return Case(
+        ground=ground_of(profile),
+        length_m=path.length_m,
+        eye_m=ends[0].amsl_m,
+        top_m=ends[1].amsl_m,
+        eye_on_ground=ends[0].agl_m is not None and ends[0].agl_m <= GRAZING_M,
+        top_on_ground=ends[1].agl_m is not None and ends[1].agl_m <= GRAZING_M,
+        near_m=near_m,
+        hill_m=hill_m,
+        kappa_per_m=earth.kappa_per_m,
+    )
+
+
+def _look(
+    path: GeodesicPath,
+    profile: PathProfile,
+    earth: Bending,
+    ends: tuple[EndReport, EndReport],
+    case: Case,
+    void_below_m: float,
+) -> _Ready:
+    look = look_at(case)
+    voids = [
+        v
+        for v in void_stretches(path, look.line, look.void)
+        if v.blocks_above_m < void_below_m
+    ]
+    lowest = min(voids, key=lambda v: v.blocks_above_m, default=None)
+    return _Ready(path, profile, earth, ends, case, look, lowest)
+
+
+def _verdict(ready: _Ready) -> Verdict:
+    if ready.look.is_blocked:
+        return Verdict.BLOCKED
+    return Verdict.CLEAR if ready.void is None else Verdict.UNDETERMINED
+
+
+def _on_dem_ground(
+    eye: Station, target: Station, ready: _Ready, void_below_m: float
+) -> OtherGround:
+    """The same question without the surveyed elevations."""
+    ends = _ends(eye, target, ready.profile, survey=False)
+    case = _case(
+        ready.path,
+        ready.profile,
+        ready.earth,
+        ends,
+        hill_m=ready.case.hill_m,
+        near_m=ready.case.near_m,
+    )
+    other = _look(ready.path, ready.profile, ready.earth, ends, case, void_below_m)
+    at = _decisive_index(other)
+    shown = shown_target(
+        case, other.look, ground_m=ends[1].ground_m, crest_tangent=None
+    ).shown
+    return OtherGround(
+        verdict=_verdict(other),
+        margin_m=None if at is None else float(other.look.at.margin_m[at]),
+        shown=shown,
+        from_ground_m=ends[0].ground_m,
+        to_ground_m=ends[1].ground_m,
+    )
+
+
+def _decisive_index(ready: _Ready) -> int | None:
+    eye, target = ready.path.start, ready.path.end
+    low_end_first = (eye.lat_deg, eye.lon_deg) <= (target.lat_deg, target.lon_deg)
+    return decisive(
+        ready.look.line,
+        ready.look.at,
+        blocked=ready.look.is_blocked,
+        low_end_first=low_end_first,
+    )
+
+
+def _spot(ready: _Ready, index: int | None) -> Place | None:
+    if index is None:
+        return None
+    at = ready.look.at
+    dist, ground = float(at.dist_m[index]), float(at.ground_m[index])
+    return place_at(ready.path, ready.look.line, dist, ground)
+
+
+def _seen_place(ready: _Ready, index: int | None) -> Place | None:
+    if index is None:
+        return None
+    seen = ready.look.seen
+    dist, ground = float(seen.dist_m[index]), float(seen.ground_m[index])
+    return place_at(ready.path, ready.look.line, dist, ground)
+
+
+def _stretches(ready: _Ready) -> tuple[Stretch, ...]:
+    if not ready.look.is_blocked:
+        return ()
+    runs = blocked_runs(ready.look.line, ready.look.known, ready.look.at)
+    return tuple(stretch_of(ready.path, ready.look.at, run) for run in runs)
+
+
+def _first_block(ready: _Ready) -> int | None:
+    above = np.flatnonzero(ready.look.at.margin_m < -GRAZING_M)
+    return int(above[0]) if above.size else None
+
+
+def _crest_index(ready: _Ready) -> int | None:
+    seen, case = ready.look.seen, ready.case
+    if ready.look.is_blocked:
+        return horizon_index(seen)
+    return front_crest_index(seen, case.eye_m, case.kappa_per_m)
+
+
+def _answer(ready: _Ready, other: OtherGround | None, void_below_m: float) -> SightLine:
+    case, look, line = ready.case, ready.look, ready.look.line
+    crest = _crest_index(ready)
+    stretches = _stretches(ready)
+    place = _spot(ready, _decisive_index(ready))
+    along = np.where(
+        ready.profile.dist_m <= line.length_m, line.height(ready.profile.dist_m), np.nan
+    )
+    return SightLine(
+        verdict=_verdict(ready),
+        grazing=not look.is_blocked and look.closest_m <= GRAZING_M,
+        margin_m=None if place is None else place.margin_m,
+        decisive=place,
+        first_block=_spot(ready, _first_block(ready)),
+        horizon=_seen_place(ready, horizon_index(look.seen)),
+        front_crest=_seen_place(ready, crest),
+        blocked_stretches=stretches,
+        target=shown_target(
+            case,
+            look,
+            ground_m=ready.ends[1].ground_m,
+            crest_tangent=None if crest is None else float(look.seen.tangent[crest]),
+        ),
+        needed=needed(
+            case,
+            look,
+            from_ground_m=ready.ends[0].ground_m,
+            to_ground_m=ready.ends[1].ground_m,
+            radius_m=ready.path.radius_m,
+            stretches=stretches,
+        ),
+        path=ready.path,
+        from_elevation_deg=_elevation_deg(look, line.eye_m, line.aim_m),
+        to_elevation_deg=_elevation_deg(look, line.aim_m, line.eye_m),
+        earth=ready.earth,
+        from_=ready.ends[0],
+        to=ready.ends[1],
+        void=ready.void,
+        cautions=cautions_for(ready.profile, ready.path, ready.earth),
+        warnings=warnings_for(ready.profile, ready.ends),
+        other_ground=other,
+        profile=ready.profile,
+        sight_m=along,
+        margin_along_m=along - ready.profile.ground_m,
+        ground_seen=_ground_seen(ready),
+        aim_distance_m=line.length_m,
+        aim_m=line.aim_m,
+        ignore_near_m=case.near_m,
+        void_below_m=void_below_m,
+    )
+
+
+def _elevation_deg(look: Look, eye_m: float, aim_m: float) -> float:
+    line = look.line
+    tangent = elevation_tangent(line.length_m, aim_m, eye_m, line.kappa_per_m)
+    return math.degrees(math.atan(tangent))
+
+
+def _ground_seen(ready: _Ready) -> BoolArray:
+    """(n,) whether the ground at each sample of the profile is seen from the eye."""
+    case, dist = ready.case, ready.profile.dist_m
+    all_rays = rays(case.ground.known, case.eye_m, case.kappa_per_m)
+    visible = is_seen(all_rays)
+    seen = np.zeros(dist.size, dtype=np.bool_)
+    where = np.searchsorted(all_rays.dist_m, dist)
+    there = np.minimum(where, all_rays.dist_m.size - 1)
+    if all_rays.dist_m.size:
+        seen = visible[there] & (all_rays.dist_m[there] == dist)
+        seen |= dist == 0.0
+    seen &= np.isfinite(ready.profile.ground_m)
+    return seen
