@@ -22,24 +22,21 @@ _PAIR: Final = 2
 _MOST_AFTER: Final = 4
 
 
-def is_iso_6709(plain: str) -> bool:
-    """Whether a text from `one_alphabet` has the shape ±lat±lon, ended or not by /."""
-    return _STRING.fullmatch(plain) is not None
-
-
-def lat_lon_from_iso_6709(plain: str) -> tuple[float, float]:
+def lat_lon_from_iso_6709(plain: str) -> tuple[float, float] | None:
     """Latitude and longitude of an ISO 6709 string.
 
     Parameters
     ----------
     plain : str
-        ±DD.DD±DDD.DD/, ±DDMM.MM±DDDMM.MM/ or ±DDMMSS.SS±DDDMMSS.SS/; the stroke at
-        the end may be missing, ``CRSWGS_84`` may stand before it.
+        Text from `one_alphabet`, which may be anything; read are ±DD.DD±DDD.DD/,
+        ±DDMM.MM±DDDMM.MM/ and ±DDMMSS.SS±DDDMMSS.SS/. The stroke at the end may be
+        missing, ``CRSWGS_84`` may stand before it.
 
     Returns
     -------
-    tuple of float [deg]
-        Latitude, longitude; north and east positive; ranges not checked.
+    tuple of float [deg], or None
+        Latitude, longitude; north and east positive; ranges not checked. None if
+        the text has not the shape of a sign, digits, a sign, digits.
 
     Raises
     ------
@@ -53,8 +50,7 @@ def lat_lon_from_iso_6709(plain: str) -> tuple[float, float]:
     """
     found = _STRING.fullmatch(plain)
     if found is None:
-        msg = f"{echo(plain)} is no ISO 6709 point; write +481233.1-0213012.4/."
-        raise InputError(msg)
+        return None
     if found["height"]:
         msg = (
             f"{echo(plain)} holds a height, {found['height']}; give the point alone "

@@ -44,6 +44,8 @@ def two_angles(plain: str) -> tuple[Angle, Angle] | None:
     if len(parts) < len(read):
         return None
     numbers = [token.text for part in parts for token in part if token.kind == "number"]
+    if not numbers:
+        return None
     refuse_decimal_commas(plain)
     _refuse_other_counts(plain, numbers, has_comma=len(parts) > 1)
     if len(parts) == 1:

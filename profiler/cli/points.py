@@ -7,7 +7,7 @@ from typing import Final
 
 from profiler.cli.angles import Angle
 from profiler.cli.characters import LONGEST_TEXT, echo, one_alphabet
-from profiler.cli.iso6709 import is_iso_6709, lat_lon_from_iso_6709
+from profiler.cli.iso6709 import lat_lon_from_iso_6709
 from profiler.cli.pairs import refuse_decimal_commas, refuse_pair, two_angles
 from profiler.errors import InputError
 
@@ -23,9 +23,8 @@ MAX_GRID: Final = 2.0e8
 _GRID_NUMBER: Final = r"([+-]?[0-9]+(?:\.[0-9]*)?)"
 _GRID_PAIR: Final = re.compile(rf"{_GRID_NUMBER}(?: ?[,;] ?| ){_GRID_NUMBER}")
 _LETTER_OR_MARK: Final = re.compile(r"[^\W\d_]|[°'\":]")
-_NO_NUMBER: Final = re.compile(
-    r"(?:[+-]?(?:[0-9.]+|nan|inf|infinity)[\s,;]*)+", re.IGNORECASE
-)
+_NO_NUMBER: Final = re.compile(r"[+-]?(?:nan|inf|infinity)", re.IGNORECASE)
+_DIGITS: Final = re.compile(r"[+-]?[0-9.]*")
 #: A word, or a letter with a whole number such as E12, is a name, not half a point.
 _SHORT_NAME: Final = re.compile(r"[A-Za-z]+ ?[0-9]*")
 _LETTER_O: Final = re.compile(r"[0-9°'\"] ?[oO](?![A-Za-z])")
@@ -96,8 +95,9 @@ def parse_point(
     if name.text in names:
         return name
     _refuse_no_text(plain)
-    if is_iso_6709(plain) and (plain.endswith("/") or not crs_given):
-        return _in_range(*lat_lon_from_iso_6709(plain))
+    may_be_iso = plain.endswith("/") or not crs_given
+    if may_be_iso and (iso := lat_lon_from_iso_6709(plain)):
+        return _in_range(*iso)
     if _SHORT_NAME.fullmatch(plain):
         return name
     if crs_given and not _LETTER_OR_MARK.search(plain):
@@ -117,7 +117,9 @@ def _refuse_no_text(plain: str) -> None:
     if len(plain) > LONGEST_TEXT:
         msg = f"{echo(plain)} is too long for a point: {len(plain)} characters."
         raise InputError(msg)
-    if _NO_NUMBER.fullmatch(plain) and re.search("[a-z]", plain, re.IGNORECASE):
+    words = re.split("[ ,;]+", plain)
+    others = [word for word in words if not _DIGITS.fullmatch(word)]
+    if others and all(_NO_NUMBER.fullmatch(word) for word in others):
         msg = f"{echo(plain)}: a point needs two finite numbers."
         raise InputError(msg)
 

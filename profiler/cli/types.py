@@ -4,6 +4,7 @@ from collections.abc import Callable
 from typing import TYPE_CHECKING, Final
 
 import click
+from click.core import ParameterSource
 
 from profiler.cli.points import EastingNorthing, LatLon, SiteName, parse_point
 from profiler.cli.quantities import (
@@ -69,11 +70,15 @@ class PointType(_PointParam):
         """Place, or click's usage error (exit 2) with the parser's sentence."""
         if not isinstance(value, str):
             return value
-        crs_given = ctx is not None and ctx.params.get(self.crs_param) is not None
         try:
-            return parse_point(value, crs_given=crs_given)
+            return parse_point(value, crs_given=self._crs_given(ctx))
         except InputError as error:
             self.fail(str(error), param, ctx)
+
+    def _crs_given(self, ctx: click.Context | None) -> bool:
+        """Whether somebody stated a CRS; the value itself may be click's "unset"."""
+        source = ctx.get_parameter_source(self.crs_param) if ctx else None
+        return source not in (None, ParameterSource.DEFAULT)
 
 
 #: 57.1,-4.2 and its relatives.

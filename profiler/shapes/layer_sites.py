@@ -33,6 +33,8 @@ _BEGINNINGS: Final = {
 #: Endings of the names of files that `read_layer_sites` reads.
 LAYER_SUFFIXES: Final = tuple(_BEGINNINGS)
 _XML: Final = (".gpx", ".kml")
+#: The root of an XML file must begin within so much [bytes]; our choice.
+_ROOT_WITHIN: Final = 65_536
 _BEFORE_ROOT: Final = re.compile(rb"<\?.*?\?>|<!--.*?-->", re.DOTALL)
 _ROOT: Final = re.compile(rb"[^<]*<(?:[\w.-]+:)?([\w.-]+)")
 _DECLARES: Final = re.compile(rb"<!(?:DOCTYPE|ENTITY)", re.IGNORECASE)
@@ -125,7 +127,7 @@ def _refuse_pretender(path: Path) -> None:
         msg = f"{path.name} is empty."
         raise InputError(msg)
     if suffix in _XML:
-        root = _ROOT.match(_BEFORE_ROOT.sub(b"", data))
+        root = _ROOT.match(_BEFORE_ROOT.sub(b"", data[:_ROOT_WITHIN]))
         head = root[1] if root else b""
         if _DECLARES.search(data):
             msg = (
@@ -181,9 +183,7 @@ def _layer(whole: str, name: str) -> _Layer:
 
     fields = pyogrio.read_info(whole, layer=name)["fields"]
     wanted = [field for field in fields if _is_wanted(field)]
-    meta, _, shapes, values = raw.read(
-        whole, layer=name, columns=wanted, force_2d=True
-    )
+    meta, _, shapes, values = raw.read(whole, layer=name, columns=wanted, force_2d=True)
     columns = dict(zip(meta["fields"], values, strict=True))
     return _Layer(crs=meta["crs"], shapes=shapely.from_wkb(shapes), columns=columns)
 

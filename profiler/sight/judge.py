@@ -216,7 +216,7 @@ def _on_dem_ground(
     other = _look(ready.path, ready.profile, ready.earth, ends, case, void_below_m)
     at = _decisive_index(other)
     shown = shown_target(
-        case, other.look, ground_m=ends[1].ground_m, crest_tangent=None
+        case, other.look, height_m=ends[1].agl_m or 0.0, crest_tangent=None
     ).shown
     return OtherGround(
         verdict=_verdict(other),
@@ -293,7 +293,7 @@ def _answer(ready: _Ready, other: OtherGround | None, void_below_m: float) -> Si
         target=shown_target(
             case,
             look,
-            ground_m=ready.ends[1].ground_m,
+            height_m=ready.ends[1].agl_m or 0.0,
             crest_tangent=None if crest is None else float(look.seen.tangent[crest]),
         ),
         needed=needed(

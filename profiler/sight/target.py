@@ -10,7 +10,7 @@ from profiler.sight.view import horizon_index
 
 
 def shown_target(
-    case: Case, look: Look, *, ground_m: float | None, crest_tangent: float | None
+    case: Case, look: Look, *, height_m: float, crest_tangent: float | None
 ) -> Target:
     """Visible and hidden part of the target, above ground and above the crest.
 
@@ -18,28 +18,27 @@ def shown_target(
     ----------
     case, look : Case, Look
         The question and its look.
-    ground_m : float or None [m]
-        Ground at the target; None makes the target a bare point.
+    height_m : float [m]
+        Top above ground; 0 makes the target a bare point.
     crest_tangent : float or None [1]
         Elevation tangent of the front crest from the eye.
     """
     line = look.line
-    height = 0.0 if ground_m is None else max(case.top_m - ground_m, 0.0)
-    hidden = _hidden(look, height)
-    shown = _shown(look, height, hidden)
-    visible = 0.0 if shown is Shown.NONE else height - hidden
+    hidden = _hidden(look, height_m)
+    shown = _shown(look, height_m, hidden)
+    visible = 0.0 if shown is Shown.NONE else height_m - hidden
     above = None
     if crest_tangent is not None:
         ray = ray_height(line.length_m, crest_tangent, line.eye_m, line.kappa_per_m)
-        above = line.aim_m - ray
+        above = float(line.aim_m - ray)
     moved = case.length_m - line.length_m
     point = shown if case.hill_m <= 0.0 else _point_shown(case)
     return Target(
-        height_m=height,
+        height_m=height_m,
         shown=shown,
         visible_m=visible,
-        hidden_m=height - visible,
-        visible_fraction=visible / height if height > 0.0 else None,
+        hidden_m=height_m - visible,
+        visible_fraction=visible / height_m if height_m > 0.0 else None,
         visible_arcmin=_visible_arcmin(look, visible),
         above_crest_m=above,
         own_hill_m=case.hill_m,
@@ -57,7 +56,7 @@ def _hidden(look: Look, height_m: float) -> float:
     ray = ray_height(
         line.length_m, float(look.seen.tangent[best]), line.eye_m, line.kappa_per_m
     )
-    return min(max(ray - (line.aim_m - height_m), 0.0), height_m)
+    return min(max(float(ray) - (line.aim_m - height_m), 0.0), height_m)
 
 
 def _shown(look: Look, height_m: float, hidden_m: float) -> Shown:

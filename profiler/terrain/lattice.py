@@ -219,10 +219,12 @@ class PostReader:
         """By pair of overlapping files: largest median step seen [m]."""
 
     def __enter__(self) -> "PostReader":
+        """Take the settings under which files are read."""
         self._env.__enter__()
         return self
 
     def __exit__(self, *exc: object) -> None:
+        """Close every file."""
         for dataset in self._open.values():
             dataset.close()
         self._open.clear()

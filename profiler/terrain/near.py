@@ -1,4 +1,4 @@
-"""Posts around one point: is it a top?"""
+"""Posts around one point, to tell whether it is a top."""
 
 from typing import NamedTuple
 

@@ -7,12 +7,15 @@ the same posts give the same ground at both registrations.
 
 import os
 import warnings
+from collections.abc import Iterator
+from contextlib import contextmanager
 from dataclasses import dataclass
 from pathlib import Path
-from typing import Final, NamedTuple
+from typing import Any, Final, NamedTuple, Protocol
 
 import numpy as np
 import rasterio
+from numpy.typing import NDArray
 from rasterio.enums import ColorInterp, MaskFlags
 from rasterio.errors import NotGeoreferencedWarning, RasterioError
 from rasterio.windows import Window
@@ -30,6 +33,9 @@ FILLER_ABOVE: Final = 1e30
 BLOCK_CACHE_BYTES: Final = 64 * 2**20
 
 
+RawArray = NDArray[Any]
+
+
 class Affine(NamedTuple):
     """x = x0 + dx_col·col + dx_row·row, y likewise, at post (row, col)."""
 
@@ -39,6 +45,13 @@ class Affine(NamedTuple):
     y0: float
     dy_col: float
     dy_row: float
+
+    def at(self, row: FloatArray, col: FloatArray) -> tuple[FloatArray, FloatArray]:
+        """CRS coordinates of posts."""
+        return (
+            self.x0 + self.dx_col * col + self.dx_row * row,
+            self.y0 + self.dy_col * col + self.dy_row * row,
+        )
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
@@ -83,8 +96,21 @@ def read_header(path: Path, *, unit: str | None, crs_text: str | None) -> Raster
         If the file is missing, unreadable, has no CRS or place, or is no grid of
         heights; the message says what to do.
     """
+    with open_grid(path) as dataset:
+        return _header_of(dataset, path, unit=unit, crs_text=crs_text)
+
+
+@contextmanager
+def open_grid(path: Path) -> Iterator["rasterio.DatasetReader"]:
+    """One elevation file, open; refused when it is no grid of heights.
+
+    Raises
+    ------
+    DemError
+        If the file is missing, unreadable or no grid of heights that lies somewhere.
+    """
     if not path.exists():
-        msg = f'No elevation file "{path}". Check the name after --dem.'
+        msg = f'No elevation file "{path}". Check its name.'
         raise DemError(msg)
     if path.is_file() and path.stat().st_size == 0:
         msg = f'"{path.name}" is empty (0 bytes). Copy or download it again.'
@@ -93,7 +119,8 @@ def read_header(path: Path, *, unit: str | None, crs_text: str | None) -> Raster
         warnings.simplefilter("ignore", NotGeoreferencedWarning)
         try:
             with rasterio.open(path) as dataset:
-                return _header_of(dataset, path, unit=unit, crs_text=crs_text)
+                refuse_what_is_no_grid(dataset, path.name)
+                yield dataset
         except RasterioError as error:
             msg = (
                 f'"{path.name}" cannot be read as an elevation grid ({_short(error)}). '
@@ -115,31 +142,35 @@ def _header_of(
     unit: str | None,
     crs_text: str | None,
 ) -> Raster:
-    _refuse_what_is_no_grid(dataset, path.name)
-    crs = _crs_of(dataset, path.name, crs_text)
-    t = dataset.transform
-    stated = unit_from_text(dataset.units[0]) or crs.vertical_unit
-    if unit is None and stated is None and crs.unit_name not in ("degree", "metre"):
+    crs = crs_of(dataset, path.name, crs_text)
+    raster = raster_of(dataset, path, crs=crs, unit=unit)
+    map_unit_is_foot = crs.unit_name not in ("degree", "metre")
+    if unit is None and raster.unit_stated is None and map_unit_is_foot:
         low, high = (f"{v:,.0f}".replace(",", " ") for v in _height_range(dataset))
         msg = (
             f"Heights run from {low} to {high}, unit not stated, map unit "
             f"{crs.unit_name}. Say --dem-unit us-ft, ft or m."
         )
         raise DemError(msg)
-    flags = dataset.mask_flag_enums[0]
+    return raster
+
+
+def raster_of(
+    dataset: "rasterio.DatasetReader", path: Path, *, crs: Projector, unit: str | None
+) -> Raster:
+    """Header of an open elevation grid whose CRS is known; nothing is refused here."""
+    stated = unit_from_text(dataset.units[0]) or crs.vertical_unit
     return Raster(
         path=path,
         rows=dataset.height,
         cols=dataset.width,
-        affine=Affine(
-            t.c + (t.a + t.b) / 2.0, t.a, t.b, t.f + (t.d + t.e) / 2.0, t.d, t.e
-        ),
+        affine=affine_of(dataset),
         crs=crs,
         dtype=dataset.dtypes[0],
         nodata=dataset.nodata,
         scale=dataset.scales[0],
         offset=dataset.offsets[0],
-        has_mask=MaskFlags.per_dataset in flags or MaskFlags.alpha in flags,
+        has_mask=hides_posts(dataset),
         unit=unit or stated or "m",
         unit_stated=stated,
         point_registered=dataset.tags().get("AREA_OR_POINT") == "Point",
@@ -147,7 +178,20 @@ def _header_of(
     )
 
 
-def _refuse_what_is_no_grid(dataset: "rasterio.DatasetReader", name: str) -> None:
+def affine_of(dataset: "rasterio.DatasetReader") -> Affine:
+    """Post (row, col) to CRS units: from cell corners to cell centres."""
+    t = dataset.transform
+    return Affine(t.c + (t.a + t.b) / 2.0, t.a, t.b, t.f + (t.d + t.e) / 2.0, t.d, t.e)
+
+
+def hides_posts(dataset: "rasterio.DatasetReader") -> bool:
+    """Whether a mask or alpha band hides posts besides the nodata value."""
+    # a mask of the band alone (as a VRT may have) raises no flag at all
+    return dataset.mask_flag_enums[0] not in ([MaskFlags.all_valid], [MaskFlags.nodata])
+
+
+def refuse_what_is_no_grid(dataset: "rasterio.DatasetReader", name: str) -> None:
+    """Raise DemError unless the file is one band of heights that lies somewhere."""
     heights = [c for c in dataset.colorinterp if c != ColorInterp.alpha]
     if dataset.count == 0 or len(heights) != 1:
         msg = f'"{name}" has {len(heights)} bands; an elevation file has one.'
@@ -170,9 +214,18 @@ def _refuse_what_is_no_grid(dataset: "rasterio.DatasetReader", name: str) -> Non
         raise DemError(msg)
 
 
-def _crs_of(
+def crs_of(
     dataset: "rasterio.DatasetReader", name: str, crs_text: str | None
 ) -> Projector:
+    """CRS of an open file, else the declared one.
+
+    Raises
+    ------
+    DemError
+        If there is none, or the file's is no map.
+    InputError
+        If the declared one cannot be read.
+    """
     if dataset.crs is not None and dataset.crs.to_wkt():
         return projector(dataset.crs.to_wkt())
     if crs_text is not None:
@@ -192,6 +245,34 @@ def _height_range(dataset: "rasterio.DatasetReader") -> tuple[float, float]:
     if posts.count() == 0:
         return 0.0, 0.0
     return float(posts.min()), float(posts.max())
+
+
+class Coded(Protocol):
+    """How a file codes its heights; `Raster` is one."""
+
+    @property
+    def path(self) -> Path:
+        """The file."""
+
+    @property
+    def nodata(self) -> float | None:
+        """Raw value that means void."""
+
+    @property
+    def scale(self) -> float:
+        """Height = raw·scale + offset, in ``unit``."""
+
+    @property
+    def offset(self) -> float:
+        """See ``scale``."""
+
+    @property
+    def unit(self) -> str:
+        """Unit of the heights: m, ft or us-ft."""
+
+    @property
+    def has_mask(self) -> bool:
+        """Whether a mask hides posts besides the nodata value."""
 
 
 class Posts(NamedTuple):
@@ -227,33 +308,46 @@ def read_posts(
     DemError
         If the blocks cannot be decoded (a truncated or damaged file).
     """
-    window = Window(col, row, cols, rows)
-    try:
-        raw = dataset.read(1, window=window)
-        hidden = dataset.read_masks(1, window=window) == 0 if raster.has_mask else None
-    except RasterioError as error:
-        msg = (
-            f'"{raster.path.name}" is damaged or cut short near row {row}, column '
-            f"{col} ({_short(error)}). Copy or download it again."
-        )
-        raise DemError(msg) from error
+    raw, hidden = read_raw(dataset, raster, Window(col, row, cols, rows))
     return to_metres(raw, raster, hidden)
 
 
-def to_metres(raw: FloatArray, raster: Raster, hidden: BoolArray | None) -> Posts:
+def read_raw(
+    dataset: "rasterio.DatasetReader", coded: Coded, window: Window
+) -> tuple[RawArray, BoolArray | None]:
+    """A window of raw values, and which of them a mask hides.
+
+    Raises
+    ------
+    DemError
+        If the blocks cannot be decoded (a truncated or damaged file).
+    """
+    try:
+        raw = dataset.read(1, window=window)
+        hidden = dataset.read_masks(1, window=window) == 0 if coded.has_mask else None
+    except RasterioError as error:
+        msg = (
+            f'"{coded.path.name}" is damaged or cut short near row {window.row_off}, '
+            f"column {window.col_off} ({_short(error)}). Copy or download it again."
+        )
+        raise DemError(msg) from error
+    return raw, hidden
+
+
+def to_metres(raw: RawArray, coded: Coded, hidden: BoolArray | None) -> Posts:
     """Raw values to metres: nodata and fillers to NaN, scale, offset and unit."""
     height = raw.astype(np.float64)
     with np.errstate(invalid="ignore", over="ignore"):
         void = ~np.isfinite(height)
-        if raster.nodata is not None and np.isfinite(raster.nodata):
-            void |= height == float(np.asarray(raster.nodata).astype(_wide(raw.dtype)))
+        if coded.nodata is not None and np.isfinite(coded.nodata):
+            void |= height == float(np.asarray(coded.nodata).astype(_wide(raw.dtype)))
         if hidden is not None:
             void |= hidden
         filler = np.abs(height) > FILLER_ABOVE
         for value in SENTINELS:
             filler |= height == value
         filler &= ~void
-        height = (height * raster.scale + raster.offset) * UNIT_M[raster.unit]
+        height = (height * coded.scale + coded.offset) * UNIT_M[coded.unit]
     height[void | filler] = np.nan
     return Posts(height, filler)
 

@@ -195,13 +195,14 @@ def _file_of(terrain: Terrain, number: int) -> SourceFile:
     return SourceFile(
         name=raster.path.name,
         bytes=size,
-        sha256=_sha256(raster.path) if hashed else None,
+        sha256=sha256_of(raster.path) if hashed else None,
         crs=raster.crs.crs_name,
         cell_m=terrain.cell_of(number),
     )
 
 
-def _sha256(path: Path) -> str:
+def sha256_of(path: Path) -> str:
+    """SHA-256 of a file's bytes, in hexadecimal."""
     with path.open("rb") as file:
         return hashlib.file_digest(file, "sha256").hexdigest()
 

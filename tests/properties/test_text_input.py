@@ -2,6 +2,7 @@
 
 import math
 from collections.abc import Callable
+from typing import TypeVar
 
 import pytest
 from hypothesis import given, settings
@@ -33,17 +34,28 @@ LATITUDES = st.floats(-89.9999, 89.9999).map(lambda value: round(value, 6))
 LONGITUDES = st.floats(-179.9999, 179.9999).map(lambda value: round(value, 6))
 
 
+T = TypeVar("T")
+
+
+def value_or_refusal(parse: Callable[[], T]) -> T | InputError:
+    try:
+        return parse()
+    except InputError as error:
+        return error
+
+
+def is_short_line(error: InputError) -> bool:
+    return 0 < len(str(error)) < 400 and str(error).isprintable()
+
+
 @TRIES
 @given(ANY, st.booleans())
 def test_any_text_is_a_point_or_is_refused_in_one_short_line(
     text: str, crs_given: bool
 ) -> None:
-    try:
-        point = parse_point(text, crs_given=crs_given)
-    except InputError as error:
-        assert 0 < len(str(error)) < 400
-        assert str(error).isprintable()
-        return
+    point = value_or_refusal(lambda: parse_point(text, crs_given=crs_given))
+    if isinstance(point, InputError):
+        assert is_short_line(point)
     if isinstance(point, LatLon):
         Point(lat_deg=point.lat_deg, lon_deg=point.lon_deg)
     if isinstance(point, SiteName):
@@ -58,13 +70,11 @@ def test_any_text_is_a_point_or_is_refused_in_one_short_line(
 def test_any_text_is_a_finite_quantity_or_is_refused_in_one_short_line(
     parse: Callable[[str], float], text: str
 ) -> None:
-    try:
-        value = parse(text)
-    except InputError as error:
-        assert 0 < len(str(error)) < 400
-        assert str(error).isprintable()
-        return
-    assert math.isfinite(value)
+    value = value_or_refusal(lambda: parse(text))
+    if isinstance(value, InputError):
+        assert is_short_line(value)
+    else:
+        assert math.isfinite(value)
 
 
 @FEW
@@ -74,10 +84,8 @@ def test_any_text_finds_a_site_or_is_refused(text: str) -> None:
         Site(name=name, point=Point(lat_deg=48.2, lon_deg=-21.5))
         for name in ("Skarvel", "Skarn", "Øst")
     ]
-    try:
-        assert find_site(sites, text) in sites
-    except InputError as error:
-        assert str(error).isprintable()
+    found = value_or_refusal(lambda: find_site(sites, text))
+    assert is_short_line(found) if isinstance(found, InputError) else found in sites
 
 
 @FEW

@@ -1,0 +1,158 @@
+"""An answer that tells itself: the sight line with its record, words and figure."""
+
+from dataclasses import dataclass, fields
+from html import escape
+from pathlib import Path
+from typing import TYPE_CHECKING, Any
+
+from profiler.constants import VOID_BELOW_M
+from profiler.model import Air, SightLine, Station
+from profiler.output.exchange import geojson
+from profiler.output.record import record, record_text
+from profiler.output.words import headline, words
+from profiler.sight import judge
+from profiler.terrain import Terrain
+
+if TYPE_CHECKING:
+    from matplotlib.figure import Figure
+
+
+@dataclass(frozen=True, slots=True, kw_only=True, eq=False, repr=False)
+class Answer(SightLine):
+    """A sight line and the terrain it was found on."""
+
+    terrain: Terrain
+    """Where the ground came from; the figure's plan map reads it again."""
+
+    def record(self) -> dict[str, Any]:
+        """The JSON record as plain values."""
+        return record(self)
+
+    def words(self, *, show_in: str = "m") -> str:
+        """The answer in plain words; ``show_in`` is "m" or "ft"."""
+        return words(self, show_in=show_in)
+
+    def geojson(self) -> dict[str, Any]:
+        """The path and its places as a GeoJSON feature collection."""
+        return geojson(self)
+
+    def figure(self, *, draw: str = "curved-sea", show_in: str = "m") -> "Figure":
+        """The annotated profile as a matplotlib figure.
+
+        Parameters
+        ----------
+        draw : str
+            "curved-sea": straight sight line over a curved sea; "level-sea": the
+            other way round.
+        show_in : str
+            "m" or "ft".
+
+        Raises
+        ------
+        InputError
+            If an option has no such value.
+        """
+        from profiler.output.figure import draw_figure  # matplotlib: 0.6 s
+        from profiler.output.plan_map import plan_map
+
+        return draw_figure(
+            self,
+            headline=headline(self, show_in=show_in),
+            ground_map=plan_map(self, self.terrain),
+            draw=draw,
+            show_in=show_in,
+        )
+
+    def save_record(self, path: str | Path) -> None:
+        """Write the JSON record to a file, whole or not at all."""
+        from profiler.output.files import write_text
+
+        write_text(Path(path), record_text(self))
+
+    def __repr__(self) -> str:
+        """The answer as a table of its first facts."""
+        rows = self._rows()
+        width = max(len(name) for name, _ in rows)
+        return "\n".join(f"{name:<{width}}  {value}" for name, value in rows)
+
+    def _repr_html_(self) -> str:
+        """The same table for a notebook."""
+        cells = "".join(
+            f"<tr><th style='text-align:left'>{escape(name)}</th>"
+            f"<td style='text-align:left'>{escape(value)}</td></tr>"
+            for name, value in self._rows()
+        )
+        return f"<table>{cells}</table>"
+
+    def _rows(self) -> list[tuple[str, str]]:
+        first, second = headline(self)
+        values = record(self)
+        decisive = values["decisive"] or {}
+        return [
+            ("answer", f"{first}{second}"),
+            ("verdict", values["verdict"]),
+            ("margin_m", str(values["margin_m"])),
+            ("decisive at", f"{decisive.get('distance_m')} m"),
+            ("shown", f"{values['target']['shown']}, {self.target.visible_m:.1f} m"),
+            ("needed", _needed_text(values["needed"])),
+            ("distance_m", str(values["path"]["distance_m"])),
+            ("azimuth_deg", str(values["path"]["azimuth_deg"])),
+            ("air", f"ke {values['earth']['ke']}, kr {values['earth']['kr']}"),
+        ]
+
+
+def _needed_text(needed: dict[str, Any]) -> str:
+    return f"from {needed['from_agl_m']} m, or to {needed['to_agl_m']} m above ground"
+
+
+def look(
+    terrain: Terrain,
+    eye: Station,
+    target: Station,
+    *,
+    air: Air | None = None,
+    own_hill_m: float | None = None,
+    ignore_near_m: float = 0.0,
+    void_below_m: float = VOID_BELOW_M,
+) -> Answer:
+    """Whether one station sees another, with everything the record holds.
+
+    Parameters
+    ----------
+    terrain : Terrain
+        From `open_terrain`.
+    eye, target : Station
+        The observing end and the observed one.
+    air : Air or None
+        Bending of the ray; None: light, kr 0.13.
+    own_hill_m : float or None [m]
+        Radius of a bare summit's own hill; None: the larger of 100 m and 3 cells.
+    ignore_near_m : float [m]
+        Ground this near to either end is not counted.
+    void_below_m : float [m]
+        A void that only higher ground could block counts as clear.
+
+    Returns
+    -------
+    Answer
+        The fields of `SightLine`, which are those of the JSON record, and methods
+        that tell them.
+
+    Raises
+    ------
+    InputError
+        If the points are one place or nearer than a cell, or a height is impossible.
+    DemError
+        If a file is damaged; OutsideDemError if an end has no ground.
+    """
+    line = judge(
+        terrain,
+        eye,
+        target,
+        air=air,
+        own_hill_m=own_hill_m,
+        ignore_near_m=ignore_near_m,
+        void_below_m=void_below_m,
+    )
+    values = {f.name: getattr(line, f.name) for f in fields(SightLine)}
+    return Answer(**values, terrain=terrain)

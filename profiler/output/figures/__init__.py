@@ -1,0 +1,1 @@
+"""Parts of the figure: page and text, profile, margin strip, target, map, tables."""

@@ -1,0 +1,185 @@
+"""The page of a figure: its size, its areas by hand, its colours and its letters."""
+
+from pathlib import Path
+from typing import Any, Final, NamedTuple
+
+import matplotlib as mpl
+from matplotlib.artist import Artist
+from matplotlib.axes import Axes
+from matplotlib.backends.backend_agg import FigureCanvasAgg, RendererAgg
+from matplotlib.figure import Figure
+from matplotlib.font_manager import FontProperties, get_font
+from matplotlib.text import Text
+
+#: A4 lying [in]; ISO 216.
+PAGE_IN: Final = (11.69, 8.27)
+#: Points in an inch [pt].
+PT_PER_IN: Final = 72.0
+
+#: Okabe and Ito, Color Universal Design (2008): blue, orange, reddish purple.
+SIGHT: Final = "#0072B2"
+GRAZING: Final = "#E69F00"
+DISC: Final = "#CC79A7"
+#: Greys: ground, its edge, hatching, lines of equal height, quiet letters.
+GROUND: Final = "#DADADA"
+EDGE: Final = "#000000"
+HATCHING: Final = "#8A8A8A"
+LEVEL: Final = "#C4C4C4"
+QUIET: Final = "#444444"
+PAPER: Final = "#FFFFFF"
+
+#: Sizes of letters [pt]: small enough for A4, large enough at 900 pixels.
+SIZE: Final = 8.5
+SMALL: Final = 8.0
+HEAD: Final = 15.0
+SUBHEAD: Final = 11.5
+#: The headline shrinks to this before it is cut [pt].
+HEAD_LEAST: Final = 10.0
+#: Distance between lines of text over their size [1].
+LINE_SPACING: Final = 1.24
+
+#: Layers: what is drawn over what.
+Z_LEVEL: Final = 1
+Z_GROUND: Final = 2
+Z_EDGE: Final = 4
+Z_RAY: Final = 5
+Z_MARK: Final = 7
+
+ELLIPSIS: Final = "…"
+#: Drawn in place of a character that the font has not.
+MISSING: Final = "□"
+
+_FONTS: Final = Path(mpl.get_data_path()) / "fonts" / "ttf"
+
+
+class Area(NamedTuple):
+    """A rectangle on the page [in], from the lower left corner."""
+
+    left: float
+    bottom: float
+    width: float
+    height: float
+
+    @property
+    def right(self) -> float:
+        """Right edge [in]."""
+        return self.left + self.width
+
+    @property
+    def top(self) -> float:
+        """Upper edge [in]."""
+        return self.bottom + self.height
+
+
+#: The areas of the page [in]; chosen by eye.
+HEAD_AREA: Final = Area(0.3, 7.52, 11.09, 0.55)
+ENDS_AREA: Final = Area(0.85, 7.0, 8.05, 0.34)
+KEY_AREA: Final = Area(0.85, 6.74, 8.05, 0.18)
+PROFILE_AREA: Final = Area(0.85, 3.72, 8.05, 2.96)
+LANE_AREA: Final = Area(0.85, 3.4, 8.05, 0.32)
+STRIP_AREA: Final = Area(0.85, 2.62, 8.05, 0.78)
+TABLE_AREA: Final = Area(0.3, 0.66, 5.5, 1.56)
+NEEDED_AREA: Final = Area(6.0, 0.66, 2.9, 1.56)
+TARGET_AREA: Final = Area(9.72, 4.5, 1.67, 2.3)
+TARGET_TEXT_AREA: Final = Area(9.2, 3.72, 2.19, 0.7)
+MAP_AREA: Final = Area(9.2, 0.95, 2.19, 2.45)
+MAP_FOOT_AREA: Final = Area(9.2, 0.66, 2.19, 0.24)
+FOOT_AREA: Final = Area(0.3, 0.13, 11.09, 0.42)
+
+
+def new_page() -> Figure:
+    """An empty A4 page with a canvas that can measure text; no pyplot."""
+    figure = Figure(figsize=PAGE_IN, facecolor=PAPER)
+    FigureCanvasAgg(figure)
+    return figure
+
+
+def letters(size: float = SIZE, *, bold: bool = False) -> FontProperties:
+    """The bundled DejaVu Sans by its file, whatever fonts the machine has."""
+    name = "DejaVuSans-Bold.ttf" if bold else "DejaVuSans.ttf"
+    return FontProperties(fname=str(_FONTS / name), size=size)
+
+
+def plain(text: str) -> str:
+    """A text on one line in characters that the font can draw."""
+    known = get_font(str(_FONTS / "DejaVuSans.ttf")).get_charmap()
+    joined = " ".join(text.split())
+    return "".join(c if ord(c) in known else MISSING for c in joined)
+
+
+def area_axes(figure: Figure, area: Area, label: str) -> Axes:
+    """Axes that fill an area of the page."""
+    width, height = PAGE_IN
+    axes: Axes = figure.add_axes(
+        (
+            area.left / width,
+            area.bottom / height,
+            area.width / width,
+            area.height / height,
+        ),
+        label=label,
+    )
+    return axes
+
+
+def write(
+    figure: Figure,
+    x_in: float,
+    y_in: float,
+    text: str,
+    *,
+    size: float = SIZE,
+    bold: bool = False,
+    color: str = EDGE,
+    **kwargs: Any,
+) -> Text:
+    """A text at a place of the page [in]; dollar signs are only dollar signs."""
+    kwargs.setdefault("va", "baseline")
+    artist: Text = figure.text(
+        x_in / PAGE_IN[0],
+        y_in / PAGE_IN[1],
+        plain(text),
+        fontproperties=letters(size, bold=bold),
+        color=color,
+        parse_math=False,
+        **kwargs,
+    )
+    return artist
+
+
+def renderer_of(figure: Figure) -> RendererAgg:
+    """The renderer that measures text on a page."""
+    canvas = figure.canvas
+    if not isinstance(canvas, FigureCanvasAgg):
+        canvas = FigureCanvasAgg(figure)
+    return canvas.get_renderer()
+
+
+def width_in(figure: Figure, artist: Artist) -> float:
+    """Width of an artist on the page [in]."""
+    box = artist.get_window_extent(renderer_of(figure))
+    return float(box.width) / float(figure.dpi)
+
+
+def fit(figure: Figure, artist: Text, most_in: float, *, least_pt: float) -> Text:
+    """The text made smaller, then cut with an ellipsis, until it is narrow enough."""
+    wide = width_in(figure, artist)
+    if wide > most_in:
+        size = float(artist.get_fontsize())
+        artist.set_fontsize(max(least_pt, size * most_in / wide))
+    text = artist.get_text()
+    while width_in(figure, artist) > most_in and len(text) > 1:
+        keep = int(len(text) * most_in / width_in(figure, artist))
+        text = text[: max(1, min(keep, len(text) - 1))].rstrip()
+        artist.set_text(text + ELLIPSIS)
+    return artist
+
+
+def style_ticks(axes: Axes) -> None:
+    """Tick labels in the page's own letters."""
+    for label in (*axes.get_xticklabels(), *axes.get_yticklabels()):
+        label.set_fontproperties(letters(SMALL))
+        label.set_parse_math(False)
+    axes.tick_params(length=3.0, width=0.6, pad=2.5, labelsize=SMALL, colors=EDGE)
+    for spine in axes.spines.values():
+        spine.set_linewidth(0.6)

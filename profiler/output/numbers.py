@@ -1,0 +1,126 @@
+"""Numbers as people read them, in metres and kilometres or feet and miles."""
+
+import math
+from dataclasses import dataclass
+from typing import Final
+
+from profiler.constants import FOOT_M, M_PER_KM, MILE_M
+from profiler.errors import InputError
+
+#: Paths shorter than this are told in metres or feet [m]; our choice.
+SHORT_PATH_M: Final = 2000.0
+#: Heights below these are told with two and three decimals instead of one [m].
+TWO_DECIMALS_BELOW: Final = 0.95
+THREE_DECIMALS_BELOW: Final = 0.0095
+
+#: Ways of rounding.
+NEAREST: Final = "nearest"
+UP: Final = "up"
+DOWN: Final = "down"
+#: Digits after the last shown one that still count when rounding up or down [1].
+RECORD_DIGITS: Final = 6
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class Show:
+    """How lengths are shown in one telling."""
+
+    unit: str = "m"
+    """m or ft."""
+    path_m: float = math.inf
+    """Length of the path, which settles whether distances are in km or m."""
+
+    def __post_init__(self) -> None:
+        """Refuse other units."""
+        if self.unit not in ("m", "ft"):
+            msg = f'Heights can be shown in m or ft, not "{self.unit}".'
+            raise InputError(msg)
+
+    @property
+    def _height_unit_m(self) -> float:
+        return 1.0 if self.unit == "m" else FOOT_M
+
+    def bare_height(self, value_m: float, *, rounding: str = NEAREST) -> str:
+        """A height without its unit: one decimal, more when it is small.
+
+        Parameters
+        ----------
+        value_m : float [m]
+        rounding : str
+            `NEAREST`; `UP` for what must suffice; `DOWN` for what must not be passed.
+        """
+        value = value_m / self._height_unit_m
+        return rounded_text(value, _decimals(abs(value)), rounding=rounding)
+
+    def height(self, value_m: float, *, rounding: str = NEAREST) -> str:
+        """A height with its unit."""
+        return f"{self.bare_height(value_m, rounding=rounding)} {self.unit}"
+
+    @property
+    def distance_unit(self) -> str:
+        """Unit of distances along the path."""
+        if self.path_m < SHORT_PATH_M:
+            return self.unit
+        return "km" if self.unit == "m" else "mi"
+
+    def bare_distance(self, value_m: float) -> str:
+        """A distance along the path without its unit."""
+        unit = self.distance_unit
+        if unit in ("m", "ft"):
+            return f"{value_m / self._height_unit_m:.0f}"
+        return f"{value_m / (M_PER_KM if unit == 'km' else MILE_M):.2f}"
+
+    def distance(self, value_m: float) -> str:
+        """A distance along the path with its unit."""
+        return f"{self.bare_distance(value_m)} {self.distance_unit}"
+
+    def length(self, value_m: float) -> str:
+        """A length of the whole path: one decimal more than places on it."""
+        unit = self.distance_unit
+        if unit in ("m", "ft"):
+            return f"{value_m / self._height_unit_m:.1f} {unit}"
+        return f"{value_m / (M_PER_KM if unit == 'km' else MILE_M):.3f} {unit}"
+
+
+def _decimals(value: float) -> int:
+    if value < THREE_DECIMALS_BELOW and value > 0.0:
+        return 3
+    return 2 if 0.0 < value < TWO_DECIMALS_BELOW else 1
+
+
+def rounded_text(value: float, decimals: int, *, rounding: str = NEAREST) -> str:
+    """A number with so many decimals, rounded to the nearest, up or down; no "-0"."""
+    scale = 10.0**decimals
+    # digits past the record's own are no reason to go a whole step further
+    steps = round(value * scale, RECORD_DIGITS)
+    if rounding == UP:
+        steps = math.ceil(steps)
+    elif rounding == DOWN:
+        steps = math.floor(steps)
+    return f"{round(steps / scale, decimals) + 0.0:.{decimals}f}"
+
+
+def latitude(value_deg: float) -> str:
+    """A latitude with five decimals (about a metre) and its letter."""
+    return f"{abs(value_deg):.5f} {'N' if value_deg >= 0.0 else 'S'}"
+
+
+def longitude(value_deg: float) -> str:
+    """A longitude with five decimals and its letter."""
+    return f"{abs(value_deg):.5f} {'E' if value_deg >= 0.0 else 'W'}"
+
+
+def place(lat_deg: float, lon_deg: float) -> str:
+    """A place in latitude and longitude."""
+    return f"{latitude(lat_deg)} {longitude(lon_deg)}"
+
+
+def count(value: int) -> str:
+    """A whole number with its thousands set apart."""
+    return f"{value:,}".replace(",", " ")
+
+
+def ratio(value: float, decimals: int = 3, *, rounding: str = NEAREST) -> str:
+    """A ratio with at most so many decimals, no trailing zeros."""
+    text = rounded_text(value, decimals, rounding=rounding)
+    return text.rstrip("0").rstrip(".") if "." in text else text

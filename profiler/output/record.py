@@ -1,0 +1,250 @@
+"""The JSON record: the one machine-readable form of an answer.
+
+Field names are the contract of docs/record.md: more may be added, none renamed.
+Metres carry 3 decimals, degrees 9, ratios 6; the same inputs give the same bytes.
+"""
+
+import hashlib
+import json
+import math
+from typing import Any, Final
+
+import numpy as np
+
+from profiler.constants import VERSION
+from profiler.model import (
+    EndReport,
+    Note,
+    Place,
+    SightLine,
+    Stretch,
+    Target,
+    VoidStretch,
+)
+
+#: Name and version of the record's form.
+SCHEMA: Final = "overbrow/profile/1"
+#: Decimals of metres, degrees and ratios.
+M_DECIMALS: Final = 3
+DEG_DECIMALS: Final = 9
+RATIO_DECIMALS: Final = 6
+#: Significant digits of a curvature [1/m].
+KAPPA_DIGITS: Final = 10
+
+Json = dict[str, Any]
+
+
+def record(line: SightLine) -> Json:
+    """The answer as plain values in the record's order.
+
+    Parameters
+    ----------
+    line : SightLine
+
+    Returns
+    -------
+    dict
+        Only str, int, float, bool, None, list and dict; no NaN, no infinity.
+    """
+    return {
+        "schema": SCHEMA,
+        "verdict": line.verdict.value,
+        "grazing": line.grazing,
+        "margin_m": _m(line.margin_m),
+        "decisive": _place(line.decisive),
+        "first_block": _place(line.first_block),
+        "horizon": _horizon(line.horizon),
+        "front_crest": _place(line.front_crest),
+        "blocked_stretches": [_stretch(s) for s in line.blocked_stretches],
+        "target": _target(line.target),
+        "needed": _needed(line),
+        "path": {
+            "distance_m": _m(line.path.length_m),
+            "azimuth_deg": _deg(line.path.azimuth_deg),
+            "back_azimuth_deg": _deg(line.path.back_azimuth_deg),
+            "samples": int(line.profile.dist_m.size),
+            "void_samples": int(np.count_nonzero(np.isnan(line.profile.ground_m))),
+        },
+        "angles": {
+            "from_elevation_deg": _deg(line.from_elevation_deg),
+            "to_elevation_deg": _deg(line.to_elevation_deg),
+        },
+        "earth": _earth(line),
+        "terrain": _terrain(line),
+        "from": _end(line.from_),
+        "to": _end(line.to),
+        "other_ground": _other(line),
+        "void": _void(line.void),
+        "settings": {
+            "ignore_near_m": _m(line.ignore_near_m),
+            "void_below_m": _m(line.void_below_m),
+            "sea_level_m": _m(line.profile.sea_level_m),
+            "sea_filled_m": _m(line.profile.sea_filled_m),
+        },
+        "cautions": [_note(n) for n in line.cautions],
+        "warnings": [_note(n) for n in line.warnings],
+        "software": {"name": "overbrow", "version": VERSION},
+    }
+
+
+def record_text(line: SightLine) -> str:
+    """The record as JSON text, one final newline."""
+    values = record(line)
+    return json.dumps(values, indent=1, ensure_ascii=False, allow_nan=False) + "\n"
+
+
+def _rounded(value: float | None, decimals: int) -> float | None:
+    # adding 0.0 turns -0.0, which a reader would take for a sign, into 0.0
+    return None if value is None else round(float(value), decimals) + 0.0
+
+
+def _m(value: float | None) -> float | None:
+    return _rounded(value, M_DECIMALS)
+
+
+def _deg(value: float) -> float:
+    return round(float(value), DEG_DECIMALS) + 0.0
+
+
+def _ratio(value: float | None) -> float | None:
+    return _rounded(value, RATIO_DECIMALS)
+
+
+def _place(place: Place | None) -> Json | None:
+    if place is None:
+        return None
+    return {
+        "distance_m": _m(place.distance_m),
+        "lat_deg": _deg(place.lat_deg),
+        "lon_deg": _deg(place.lon_deg),
+        "ground_m": _m(place.ground_m),
+        "cover_m": _m(place.cover_m),
+        "sight_m": _m(place.sight_m),
+        "margin_m": _m(place.margin_m),
+    }
+
+
+def _horizon(place: Place | None) -> Json | None:
+    fields = _place(place)
+    if fields is None or place is None:
+        return None
+    return {**fields, "elevation_deg": _deg(place.elevation_deg)}
+
+
+def _stretch(stretch: Stretch) -> Json:
+    return {
+        "start_m": _m(stretch.start_m),
+        "end_m": _m(stretch.end_m),
+        "worst_margin_m": _m(stretch.worst_margin_m),
+        "worst_at_m": _m(stretch.worst_at_m),
+        "lat_deg": _deg(stretch.lat_deg),
+        "lon_deg": _deg(stretch.lon_deg),
+    }
+
+
+def _target(target: Target) -> Json:
+    return {
+        "height_m": _m(target.height_m),
+        "shown": target.shown.value,
+        "visible_m": _m(target.visible_m),
+        "hidden_m": _m(target.hidden_m),
+        "visible_fraction": _ratio(target.visible_fraction),
+        "visible_arcmin": _m(target.visible_arcmin),
+        "above_crest_m": _m(target.above_crest_m),
+        "own_hill_m": _m(target.own_hill_m),
+        "aim_moved_m": _m(target.aim_moved_m),
+        "point_shown": target.point_shown.value,
+    }
+
+
+def _needed(line: SightLine) -> Json:
+    needed = line.needed
+    return {
+        "from_agl_m": _m(needed.from_agl_m),
+        "to_agl_m": _m(needed.to_agl_m),
+        "both_extra_m": _m(needed.both_extra_m),
+        "ke": _ratio(needed.ke),
+        "kr": _ratio(needed.kr),
+        "dem_bias_m": _m(needed.dem_bias_m),
+        "from_stretch": needed.from_stretch,
+        "to_stretch": needed.to_stretch,
+        "both_stretch": needed.both_stretch,
+    }
+
+
+def _earth(line: SightLine) -> Json:
+    earth = line.earth
+    return {
+        "ke": _ratio(earth.ke),
+        "kr": _ratio(earth.kr),
+        "kappa_per_m": float(f"{earth.kappa_per_m:.{KAPPA_DIGITS}g}") + 0.0,
+        "radius_m": _m(earth.radius_m),
+        "effective_radius_m": _m(earth.effective_radius_m),
+        "stated": earth.stated,
+        "is_default": earth.is_default,
+    }
+
+
+def _terrain(line: SightLine) -> Json:
+    profile = line.profile
+    heights = profile.ground_m.astype("<f8").tobytes()
+    return {
+        "files": [
+            {
+                "name": f.name,
+                "bytes": f.bytes,
+                "sha256": f.sha256,
+                "crs": f.crs,
+                "cell_m": [_m(side) for side in f.cell_m],
+            }
+            for f in profile.files
+        ],
+        "samples_sha256": hashlib.sha256(heights).hexdigest(),
+        "dem_kind": profile.dem_kind.value,
+        "interpolation": profile.interpolation.value,
+        "vertical_unit": profile.vertical_unit,
+    }
+
+
+def _end(end: EndReport) -> Json:
+    return {
+        "name": end.name,
+        "lat_deg": _deg(end.lat_deg),
+        "lon_deg": _deg(end.lon_deg),
+        "ground_m": _m(end.ground_m),
+        "agl_m": _m(end.agl_m),
+        "amsl_m": _m(end.amsl_m),
+        "dem_ground_m": _m(end.dem_ground_m),
+        "ground_from": end.ground_from,
+    }
+
+
+def _other(line: SightLine) -> Json | None:
+    other = line.other_ground
+    if other is None:
+        return None
+    return {
+        "verdict": other.verdict.value,
+        "margin_m": _m(other.margin_m),
+        "shown": other.shown.value,
+        "from_ground_m": _m(other.from_ground_m),
+        "to_ground_m": _m(other.to_ground_m),
+    }
+
+
+def _void(void: VoidStretch | None) -> Json | None:
+    if void is None:
+        return None
+    return {
+        "start_m": _m(void.start_m),
+        "end_m": _m(void.end_m),
+        "lat_deg": _deg(void.lat_deg),
+        "lon_deg": _deg(void.lon_deg),
+        # ground that would block is rounded down: the safe side
+        "blocks_above_m": math.floor(void.blocks_above_m * 10**M_DECIMALS)
+        / 10**M_DECIMALS,
+    }
+
+
+def _note(note: Note) -> Json:
+    return {"code": note.code, "text": note.text}
