@@ -1,1 +1,57 @@
 """Terrain line-of-sight profiler: does one point see another over real ground."""
+
+from profiler.constants import VERSION
+from profiler.earth import (
+    apparent_size_deg,
+    conversion_table,
+    hidden_by_curvature_m,
+    horizon_dip_deg,
+    horizon_distance_m,
+    horizon_distance_straight_m,
+    kr_from_half_coefficient,
+    kr_from_weather,
+)
+from profiler.errors import DemError, InputError, OutsideDemError, ProfilerError
+from profiler.model import (
+    Air,
+    DemKind,
+    Interpolation,
+    Point,
+    Shown,
+    SightLine,
+    Station,
+    Verdict,
+)
+from profiler.output.answer import Answer, look
+from profiler.shapes import read_sites
+from profiler.terrain import Terrain, open_terrain, sample_path
+
+__all__ = [
+    "Air",
+    "Answer",
+    "DemError",
+    "DemKind",
+    "InputError",
+    "Interpolation",
+    "OutsideDemError",
+    "Point",
+    "ProfilerError",
+    "Shown",
+    "SightLine",
+    "Station",
+    "Terrain",
+    "VERSION",
+    "Verdict",
+    "apparent_size_deg",
+    "conversion_table",
+    "hidden_by_curvature_m",
+    "horizon_dip_deg",
+    "horizon_distance_m",
+    "horizon_distance_straight_m",
+    "kr_from_half_coefficient",
+    "kr_from_weather",
+    "look",
+    "open_terrain",
+    "read_sites",
+    "sample_path",
+]

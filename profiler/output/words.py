@@ -18,6 +18,9 @@ from profiler.output.record import record
 #: Coefficient of refraction that clear days exceed too seldom to count on [1];
 #: radio's normal 4/3, which light reaches only in strong inversions; our choice.
 KR_TO_COUNT_ON: Final = 0.25
+#: Coefficient of refraction below which no kilometres-long ray was ever bent [1]; our
+#: choice: radio's rarest ke of 1/2 is kr −1.
+KR_OUT_OF_REACH: Final = -1.0
 #: Width of the lead words [characters].
 LEAD: Final = 13
 #: Stretches listed before the rest are only counted [1].
@@ -242,15 +245,20 @@ def _in_the_way(values: Json, show: Show) -> list[str]:
     for number, s in listed:
         decides = s["start_m"] <= decisive_at <= s["end_m"]
         rows.append(
-            f"{number}  {show.bare_distance(s['start_m'])}-{show.distance(s['end_m'])}   "
-            f"{show.height(-s['worst_margin_m'])} at {show.distance(s['worst_at_m'])}   "
-            f"{place(s['lat_deg'], s['lon_deg'])}{'   decides' if decides else ''}"
+            f"{number}  {_from_to(s, show)}   {show.height(-s['worst_margin_m'])} at "
+            f"{show.distance(s['worst_at_m'])}   {place(s['lat_deg'], s['lon_deg'])}"
+            f"{'   decides' if decides else ''}"
         )
     if len(listed) < len(stretches):
         rows.append(
             f"and {len(stretches) - len(listed)} lesser ones, all in the record"
         )
     return _led("in the way", rows)
+
+
+def _from_to(stretch: Json, show: Show) -> str:
+    start, end = stretch["start_m"], stretch["end_m"]
+    return f"{show.bare_distance(start)}-{show.distance(end)}"
 
 
 def _listed(stretches: list[Json]) -> list[tuple[int, Json]]:
@@ -273,8 +281,8 @@ def _shown(values: Json, show: Show) -> list[str]:
     elif height > 0.0 and target["shown"] != "none":
         lines.append(
             f"{show.height(target['visible_m'])} of {show.height(height)} "
-            f"({target['visible_fraction']:.0%}), {target['visible_arcmin']:.1f}′ at the "
-            "eye"
+            f"({target['visible_fraction']:.0%}), {target['visible_arcmin']:.1f}′ at "
+            "the eye"
         )
     if crest is not None and values["verdict"] != "blocked":
         lines.append(
@@ -283,8 +291,8 @@ def _shown(values: Json, show: Show) -> list[str]:
         )
     if target["own_hill_m"] > 0.0:
         lines.append(
-            f"ground within {show.height(target['own_hill_m'])} of the top counts as its "
-            f"own hill; without it: {_without_hill(target)}"
+            f"ground within {show.height(target['own_hill_m'])} of the top counts as "
+            f"its own hill; without it: {_without_hill(target)}"
         )
     return _led("shown", lines)
 
@@ -347,7 +355,7 @@ def _closers(values: Json, needed: Json, show: Show) -> list[str]:
     if needed["dem_bias_m"] is not None and needed["dem_bias_m"] > 0.0:
         higher = show.height(needed["dem_bias_m"], rounding=DOWN)
         other.append(f"all ground between more than {higher} higher")
-    if needed["kr"] is not None:
+    if needed["kr"] is not None and needed["kr"] > KR_OUT_OF_REACH:
         other.append(f"kr below {ratio(needed['kr'], 2, rounding=UP)}")
     lines = ["; or ".join(other)] if other else []
     heights = []
@@ -386,6 +394,9 @@ def _check(values: Json, show: Show) -> list[str]:
     if at is None:
         return []
     where = place(at["lat_deg"], at["lon_deg"])
+    for number, s in enumerate(values["blocked_stretches"], start=1):
+        if s["start_m"] <= at["distance_m"] <= s["end_m"]:
+            where = str(number)
     decides = show.height(abs(at["margin_m"]))
     return _led("check", [f"at {where}: height of ground and trees. {decides} decide"])
 

@@ -32,10 +32,7 @@ def end_report(
     """
     surveyed = station.surveyed_ground_m if survey else None
     ground = dem_ground_m if surveyed is None else surveyed
-    if ground is None:
-        source = "none"
-    else:
-        source = "dem" if surveyed is None else "surveyed"
+    known_from = "dem" if surveyed is None else "surveyed"
     agl, amsl = station.agl_m, station.amsl_m
     if amsl is None:
         if ground is None or agl is None:
@@ -51,7 +48,7 @@ def end_report(
         agl_m=agl,
         amsl_m=amsl,
         dem_ground_m=dem_ground_m,
-        ground_from=source,
+        ground_from="none" if ground is None else known_from,
     )
 
 
@@ -59,8 +56,8 @@ def _above_ground(station: Station, agl_m: float, ground_m: float, role: str) ->
     if agl_m < -ON_GROUND_M:
         who = station.name or f"the {role} end"
         msg = (
-            f"{station.amsl_m:g} m above sea level at {who} is {-agl_m:.1f} m under its "
-            f"ground of {ground_m:.1f} m. Was the height above ground? Then say "
+            f"{station.amsl_m:g} m above sea level at {who} is {-agl_m:.1f} m under "
+            f"its ground of {ground_m:.1f} m. Was the height above ground? Then say "
             f"--{role}-height; or give the surveyed ground with --{role}-ground."
         )
         raise InputError(msg)
@@ -71,7 +68,7 @@ def _no_ground(station: Station, role: str) -> OutsideDemError:
     who = station.name or "the point"
     lat, lon = station.point.lat_deg, station.point.lon_deg
     msg = (
-        f"--{role}: no ground is known at {who} ({lat:.5f}, {lon:.5f}). Give its height "
-        f"above sea level (--{role}-amsl) or its surveyed ground (--{role}-ground)."
+        f"--{role}: no ground is known at {who} ({lat:.5f}, {lon:.5f}). Give its "
+        f"height above sea level (--{role}-amsl) or its surveyed ground (--{role}-ground)."
     )
     return OutsideDemError(msg)

@@ -116,8 +116,8 @@ def _check_lengths(
             raise InputError(msg)
     if 2.0 * ignore_near_m >= path.length_m:
         msg = (
-            f"--ignore-near {ignore_near_m:g} m at both ends leaves nothing of a path of "
-            f"{path.length_m:.0f} m. Use less than half of it."
+            f"--ignore-near {ignore_near_m:g} m at both ends leaves nothing of a path "
+            f"of {path.length_m:.0f} m. Use less than half of it."
         )
         raise InputError(msg)
 

@@ -31,8 +31,8 @@ def warnings_for(
             notes.append(Note(code="tall", text=text))
     if profile.sea_filled_m > 0.0:
         text = (
-            f"{profile.sea_filled_m / M_PER_KM:.2f} km without ground count as water at "
-            f"{profile.sea_level_m:g} m, as asked. Tides and waves are not counted."
+            f"{profile.sea_filled_m / M_PER_KM:.2f} km without ground count as water "
+            f"at {profile.sea_level_m:g} m, as asked. Tides and waves are not counted."
         )
         notes.append(Note(code="sea-filled", text=text))
     return tuple(notes)
@@ -74,16 +74,12 @@ def cautions_for(
     profile: PathProfile, path: GeodesicPath, earth: Bending
 ) -> tuple[Note, ...]:
     """What the answer cannot know, whatever the data."""
-    counted = {
-        DemKind.BARE: "Ground only: no trees, buildings or weather.",
-        DemKind.SURFACE: "Trees and buildings count as the surface model has them.",
-        DemKind.UNKNOWN: (
-            "Whether trees and buildings are in the heights is not stated."
-        ),
-    }
+    counted = "Ground only: no trees, buildings or weather."
+    if profile.dem_kind is DemKind.SURFACE:
+        counted = "Trees and buildings as the surface model has them; no weather."
     text = (
-        f"{counted[profile.dem_kind]} Check on site before you build, climb or decide; "
-        "local codes and licensed practice rule."
+        f"{counted} Check on site before you build, climb or decide; local codes and "
+        "licensed practice rule."
     )
     notes = [Note(code="check-on-site", text=text)]
     cell = max((side for f in profile.files for side in f.cell_m), default=0.0)
@@ -94,8 +90,6 @@ def cautions_for(
         text = "Heights above a geoid follow its bow over so long a path; not modelled."
         notes.append(Note(code="geoid-bow", text=text))
     if earth.kappa_per_m <= 0.0:
-        text = (
-            "A ray bent as much as the earth or more is a duct: rare, never planned on."
-        )
+        text = "A ray bent as much as the earth or more is a duct: never planned on."
         notes.append(Note(code="duct", text=text))
     return tuple(notes)

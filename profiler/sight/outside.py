@@ -28,8 +28,8 @@ def check_inside(terrain: Terrain, station: Station, *, role: str) -> None:
         return
     if _fits_exchanged(terrain, point):
         msg = (
-            f"--{role}: {point.lat_deg:g}, {point.lon_deg:g} lies outside the DEM. With "
-            "latitude and longitude exchanged the point fits: "
+            f"--{role}: {point.lat_deg:g}, {point.lon_deg:g} lies outside the DEM. "
+            "With latitude and longitude exchanged the point fits: "
             f'--{role} "{point.lon_deg:g},{point.lat_deg:g}".'
         )
         raise OutsideDemError(msg)

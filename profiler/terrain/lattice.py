@@ -307,6 +307,17 @@ class PostReader:
                 self.steps[pair] = step
 
 
+def tiles_within(lattice: Lattice, row: int, col: int, rows: int, cols: int) -> int:
+    """How many tiles (a tile met again after a turn counts twice) reach a window."""
+    reached = 0
+    for tile in lattice.tiles:
+        if tile.row < row + rows and row < tile.row + tile.raster.rows:
+            for turn in _turns(lattice, tile, col, cols):
+                left = tile.col + turn
+                reached += left < col + cols and col < left + tile.raster.cols
+    return reached
+
+
 def _turns(lattice: Lattice, tile: Tile, col: int, cols: int) -> range:
     """Shifts by whole turns [columns] that may bring a tile into a window."""
     if lattice.turn_cols is None:

@@ -11,9 +11,9 @@ import numpy as np
 
 from profiler.model.arrays import BoolArray, FloatArray, IntArray
 from profiler.model.terrain import Interpolation
-from profiler.terrain.lattice import Lattice, PostReader, Window
+from profiler.terrain.lattice import Lattice, PostReader, Window, tiles_within
 from profiler.terrain.pixel_path import ON_POST_CELLS, PixelPath
-from profiler.terrain.seams import note_seams
+from profiler.terrain.seams import SEAM_POSTS, note_seams
 
 #: Pieces read together [1] and the most posts in one window [1]; our choice: a
 #: window of a straight run of 256 cells stays below half a megabyte.
@@ -158,8 +158,7 @@ def read_pieces(
         row, col = layout.row[chunk], layout.col[chunk]
         top, left = int(row.min()), int(col.min())
         rows, cols = int(row.max()) - top + 2, int(col.max()) - left + 2
-        window = reader.window(lattice, top, left, rows, cols)
-        note_seams(reader.steps, window)
+        window = _window_with_seams(reader, lattice, (top, left), (rows, cols))
         if void_as_m is not None:
             window = Window(
                 np.where(np.isnan(window.height_m), void_as_m, window.height_m),
@@ -170,6 +169,22 @@ def read_pieces(
             window, row - top, col - left, parts, interpolation
         )
     return Pieces(layout.start_m, layout.end_m, height, source)
+
+
+def _window_with_seams(
+    reader: PostReader, lattice: Lattice, corner: tuple[int, int], size: tuple[int, int]
+) -> Window:
+    """A window; where files meet in it, their step is judged on more of the seam."""
+    rows, cols = size
+    if tiles_within(lattice, *corner, rows, cols) < 2:
+        return reader.window(lattice, *corner, rows, cols)
+    far = SEAM_POSTS
+    wide = reader.window(
+        lattice, corner[0] - far, corner[1] - far, rows + 2 * far, cols + 2 * far
+    )
+    note_seams(reader.steps, wide)
+    part = (slice(far, far + rows), slice(far, far + cols))
+    return Window(wide.height_m[part], wide.owner[part])
 
 
 def _chunks(layout: Layout, todo: IntArray) -> list[IntArray]:

@@ -170,9 +170,8 @@ def _fit_one(
 
 def _through(nodes: FloatArray, values: FloatArray) -> FloatArray:
     """Chebyshev coefficients of the polynomial through values at Lobatto nodes."""
-    coefs: FloatArray = np.linalg.solve(
-        chebyshev.chebvander(nodes, len(nodes) - 1), values
-    )
+    powers = chebyshev.chebvander(nodes, len(nodes) - 1)
+    coefs: FloatArray = np.linalg.solve(powers, values).astype(np.float64)
     return coefs
 
 

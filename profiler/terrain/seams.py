@@ -10,6 +10,15 @@ from profiler.terrain.lattice import Window
 
 #: Fewest neighbouring pairs of posts that make a median worth stating [1]; our choice.
 FEWEST_PAIRS: Final = 8
+#: How far a seam is followed to either side of the path [posts]; measured on the
+#: roughest ground at hand (pairs scatter by 6 m): a step of 3 m stands out.
+SEAM_POSTS: Final = 100
+#: Standard error of a median of n normal values, in their median deviation/√n [1]:
+#: √(π/2)·1.4826.
+ERROR_OF_MEDIAN: Final = 1.858
+#: A step must exceed the standard error this many times [1]; measured on the same
+#: ground: 2 false steps in 1000 seams, 5 times as many at 3.
+SURE: Final = 4.0
 
 
 def note_seams(steps: dict[tuple[int, int], float], window: Window) -> None:
@@ -41,6 +50,9 @@ def note_seams(steps: dict[tuple[int, int], float], window: Window) -> None:
         if gaps.size < FEWEST_PAIRS:
             continue
         step = float(np.median(gaps))
+        scatter = float(np.median(np.abs(gaps - step)))
+        if abs(step) < SURE * ERROR_OF_MEDIAN * scatter / np.sqrt(gaps.size):
+            continue
         if abs(step) > max(SEAM_STEP_M, abs(steps.get(pair, 0.0))):
             steps[pair] = step
 

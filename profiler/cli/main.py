@@ -1,0 +1,77 @@
+"""The command ``overbrow``: its first screen and its sub-commands."""
+
+import os
+import sys
+from importlib import import_module
+from typing import Final
+
+import click
+
+from profiler.cli.sections import EXIT_NO_READER
+from profiler.constants import VERSION
+
+#: Sub-commands: module and name of the command in it, imported when called.
+COMMANDS: Final = {
+    "profile": ("profiler.cli.profile", "profile_command"),
+    "inspect": ("profiler.cli.inspect", "inspect_command"),
+    "demo": ("profiler.cli.demo", "demo_command"),
+}
+
+FIRST_SCREEN: Final = f"""\
+overbrow {VERSION}, terrain line-of-sight profiler.
+Does one point see another over real ground, by how much, what decides it, and what
+would change the answer? You bring an elevation file (GeoTIFF) and two points.
+
+Try it on the invented sample upland:
+  overbrow demo
+Ask about two points (latitude,longitude; heights above ground):
+  overbrow profile --dem upland.tif --from "48.20920,-21.50344" --from-height 20m \\
+    --to "48.32758,-21.17892" --to-height 30m
+Ask by name, draw the profile and keep the record:
+  overbrow profile --dem upland.tif --sites sites.csv --from Skarvel \\
+    --to "Thrane Pike" --figure profile.png --json profile.json
+See what an elevation file is and what must be declared:
+  overbrow inspect upland.tif
+
+More: overbrow --help, overbrow profile --help
+"""
+
+
+class LazyGroup(click.Group):
+    """A group that imports a sub-command only when it is called or listed."""
+
+    def list_commands(self, ctx: click.Context) -> list[str]:
+        """Names in the order of use."""
+        del ctx
+        return list(COMMANDS)
+
+    def get_command(self, ctx: click.Context, cmd_name: str) -> click.Command | None:
+        """The command, or None so that click names the nearest."""
+        del ctx
+        if cmd_name not in COMMANDS:
+            return None
+        module, name = COMMANDS[cmd_name]
+        command: click.Command = getattr(import_module(module), name)
+        return command
+
+
+@click.group(cls=LazyGroup, invoke_without_command=True)
+@click.version_option(VERSION, prog_name="overbrow, terrain line-of-sight profiler")
+@click.pass_context
+def overbrow(ctx: click.Context) -> None:
+    """Terrain line-of-sight profiler: does one point see another over real ground.
+
+    Every command has --help of its own, with units, defaults and examples.
+    """
+    if ctx.invoked_subcommand is None:
+        click.echo(FIRST_SCREEN, nl=False)
+
+
+def run() -> None:
+    """Run the command line; the entry point of the installed script."""
+    try:
+        overbrow.main(prog_name="overbrow", windows_expand_args=False)
+    except BrokenPipeError:
+        # the reader closed the pipe: nothing more can be said, and nothing is wrong
+        os.dup2(os.open(os.devnull, os.O_WRONLY), sys.stdout.fileno())
+        sys.exit(EXIT_NO_READER)

@@ -1,0 +1,204 @@
+"""From the options of a question to its terrain, stations and air."""
+
+from collections.abc import Mapping, Sequence
+from pathlib import Path
+from typing import Any
+
+import click
+
+from profiler.cli.points import EastingNorthing, LatLon, SiteName, parse_point
+from profiler.cli.quantities import ke_looks_like_kr
+from profiler.constants import EYE_M, SURVEY_GAP_M
+from profiler.errors import InputError
+from profiler.model import Air, Point, Station
+from profiler.terrain import Terrain, open_terrain
+
+#: Room added around a question when the ground it needs is named [deg]; our choice.
+BOX_ROOM_DEG = 0.01
+
+Options = Mapping[str, Any]
+
+
+def air_from(options: Options) -> Air:
+    """The air as stated by at most one of four options.
+
+    Raises
+    ------
+    click.UsageError
+        If several are given.
+    """
+    given = [name for name in ("ke", "kr", "n_gradient") if options[name] is not None]
+    if options["no_refraction"]:
+        given.append("no_refraction")
+    if len(given) > 1:
+        names = " and ".join(f"--{name.replace('_', '-')}" for name in given)
+        msg = f"{names} say the same thing twice. Give one of them."
+        raise click.UsageError(msg)
+    ke = options["ke"]
+    if ke is not None and ke_looks_like_kr(ke):
+        text = f"--ke {ke:g} bends rays down hard; for a refraction coefficient: --kr."
+        click.echo(f"Warning: {text}", err=True)
+    kr = 0.0 if options["no_refraction"] else options["kr"]
+    return Air(ke=ke, kr=kr, n_gradient_per_km=options["n_gradient"])
+
+
+def terrain_from(options: Options) -> Terrain:
+    """The elevation model as stated.
+
+    Raises
+    ------
+    DemError
+        If a file is missing or cannot be used.
+    """
+    return open_terrain(
+        *options["dem"],
+        interpolation=options["interpolation"],
+        dem_kind=options["dem_kind"] or "unknown",
+        dem_unit=options["dem_unit"],
+        dem_crs=options["dem_crs"],
+        sea_level_m=options["sea_level"],
+        hash_all=options["hash_all"],
+    )
+
+
+class Places:
+    """Turns what was written after --from and --to into stations."""
+
+    def __init__(self, options: Options) -> None:
+        """Read the file of sites, once."""
+        self._options = options
+        self._sites: Sequence[Any] = ()
+        if options["sites"] is not None:
+            from profiler.shapes import read_site_file
+
+            found = read_site_file(options["sites"])
+            self._sites = found.sites
+            for note in found.notes:
+                click.echo(f"Warning: {note.text}", err=True)
+
+    def station(self, role: str, terrain: Terrain | None) -> Station:
+        """The station of one end.
+
+        Parameters
+        ----------
+        role : str
+            "from" or "to".
+        terrain : Terrain or None
+            Needed for ``--crs dem`` only.
+
+        Raises
+        ------
+        InputError
+            If the text is no point and no site.
+        """
+        options = self._options
+        text = options[f"{role}_point"]
+        names = [site.name for site in self._sites]
+        try:
+            value = parse_point(text, crs_given=options["crs"] is not None, names=names)
+            point, name, surveyed = self._place(value, terrain)
+        except InputError as error:
+            msg = f"--{role}: {error}"
+            raise InputError(msg) from error
+        gap = SURVEY_GAP_M
+        if options[f"{role}_ground"] is not None:
+            surveyed, gap = options[f"{role}_ground"], 0.0
+        amsl, agl = options[f"{role}_amsl"], options[f"{role}_height"]
+        if amsl is None and agl is None:
+            agl = EYE_M if role == "from" else 0.0
+        return Station(
+            point=point,
+            name=name,
+            agl_m=agl,
+            amsl_m=amsl,
+            surveyed_ground_m=surveyed,
+            survey_gap_m=gap,
+        )
+
+    def _place(
+        self, value: LatLon | EastingNorthing | SiteName, terrain: Terrain | None
+    ) -> tuple[Point, str, float | None]:
+        if isinstance(value, LatLon):
+            return Point(lat_deg=value.lat_deg, lon_deg=value.lon_deg), "", None
+        if isinstance(value, EastingNorthing):
+            return _from_grid(value, self._options["crs"], terrain), "", None
+        if self._options["sites"] is None:
+            msg = (
+                f'"{value.text}" is no pair of coordinates. Write "57.1,-4.2" '
+                "(latitude,longitude), or give the file that names it with --sites."
+            )
+            raise InputError(msg)
+        from profiler.shapes import find_site
+
+        site = find_site(self._sites, value.text)
+        return site.point, site.name, site.surveyed_ground_m
+
+
+def _from_grid(value: EastingNorthing, crs_text: str, terrain: Terrain | None) -> Point:
+    import numpy as np
+
+    from profiler.earth import crs_from_user
+
+    if crs_text.lower() == "dem":
+        if terrain is None:
+            msg = "--crs dem needs --dem."
+            raise InputError(msg)
+        crs = terrain.lattices[0].crs
+    else:
+        crs = crs_from_user(crs_text)
+    lat, lon = crs.to_wgs84(np.array([value.x]), np.array([value.y]))
+    if not (np.isfinite(lat[0]) and np.isfinite(lon[0])):
+        msg = f"{value.x:g}, {value.y:g} is no place in {crs.crs_name}."
+        raise InputError(msg)
+    return Point(lat_deg=float(lat[0]), lon_deg=float(lon[0]))
+
+
+def check_heights(options: Options) -> None:
+    """Refuse two heights for one end.
+
+    Raises
+    ------
+    click.UsageError
+        If an end has a height above ground and one above sea level.
+    """
+    for role in ("from", "to"):
+        height = options[f"{role}_height"]
+        if height is not None and options[f"{role}_amsl"] is not None:
+            msg = f"--{role}-height and --{role}-amsl both state a height. Give one."
+            raise click.UsageError(msg)
+        if height is not None and height < 0.0:
+            msg = f"--{role}-height {height:g} m is below the ground. Use 0 or more."
+            raise InputError(msg)
+
+
+def box_text(places: Places) -> str:
+    """The box of ground that a question needs, in words."""
+    points = [places.station(role, None).point for role in ("from", "to")]
+    lats = [p.lat_deg for p in points]
+    lons = [p.lon_deg for p in points]
+    if max(lons) - min(lons) > 180.0:
+        lons = [lon % 360.0 for lon in lons]
+    return (
+        f"{min(lats) - BOX_ROOM_DEG:.2f} to {max(lats) + BOX_ROOM_DEG:.2f} N, "
+        f"{min(lons) - BOX_ROOM_DEG:.2f} to {max(lons) + BOX_ROOM_DEG:.2f} E"
+    )
+
+
+def targets_of(options: Options) -> list[Path]:
+    """Files that will be written, checked before any work is done.
+
+    Raises
+    ------
+    InputError
+        If one cannot be written or two are the same.
+    """
+    from profiler.output.files import check_target
+
+    names = [options[k] for k in ("json_file", "figure", "geojson")]
+    paths = [Path(n) for n in names if n is not None and str(n) != "-"]
+    for path in paths:
+        check_target(path)
+    if len({p.resolve() for p in paths}) < len(paths):
+        msg = "Two results go to one file. Give each its own name."
+        raise InputError(msg)
+    return paths
