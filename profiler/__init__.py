@@ -27,6 +27,7 @@ from profiler.shapes import read_sites
 from profiler.terrain import Terrain, open_terrain, sample_path
 
 __all__ = [
+    "VERSION",
     "Air",
     "Answer",
     "DemError",
@@ -40,7 +41,6 @@ __all__ = [
     "SightLine",
     "Station",
     "Terrain",
-    "VERSION",
     "Verdict",
     "apparent_size_deg",
     "conversion_table",

@@ -274,9 +274,10 @@ def _shown(values: Json, show: Show) -> list[str]:
     height = target["height_m"]
     if values["verdict"] == "blocked" and height > 0.0:
         below = show.height(-target["above_crest_m"])
+        where = show.distance(values["horizon"]["distance_m"])
         lines.append(
-            f"none of {show.height(height)}; the lowest ray past the ground at "
-            f"{show.distance(values['horizon']['distance_m'])} goes {below} over the top"
+            f"none of {show.height(height)}; the lowest ray past the ground at {where} "
+            f"goes {below} over the top"
         )
     elif height > 0.0 and target["shown"] != "none":
         lines.append(

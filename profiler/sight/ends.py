@@ -69,6 +69,7 @@ def _no_ground(station: Station, role: str) -> OutsideDemError:
     lat, lon = station.point.lat_deg, station.point.lon_deg
     msg = (
         f"--{role}: no ground is known at {who} ({lat:.5f}, {lon:.5f}). Give its "
-        f"height above sea level (--{role}-amsl) or its surveyed ground (--{role}-ground)."
+        f"height above sea level (--{role}-amsl) or its surveyed ground "
+        f"(--{role}-ground)."
     )
     return OutsideDemError(msg)

@@ -129,8 +129,9 @@ def open_grid(path: Path) -> Iterator["rasterio.DatasetReader"]:
             raise DemError(msg) from error
 
 
-def _short(error: Exception) -> str:
-    """First sentence of a library's message, without the file's folder."""
+def _short(error: BaseException) -> str:
+    """First sentence of a library's message or its cause, without the file's folder."""
+    error = error.__cause__ or error
     text = str(error).strip().splitlines()[0] if str(error).strip() else "damaged"
     return Path(text).name if os.sep in text else text
 
@@ -144,6 +145,12 @@ def _header_of(
 ) -> Raster:
     crs = crs_of(dataset, path.name, crs_text)
     raster = raster_of(dataset, path, crs=crs, unit=unit)
+    if unit is None and dataset.units[0] and unit_from_text(dataset.units[0]) is None:
+        msg = (
+            f'"{path.name}" states heights in "{dataset.units[0]}", which is not read. '
+            "Say --dem-unit m, ft or us-ft, or convert them to metres."
+        )
+        raise DemError(msg)
     map_unit_is_foot = crs.unit_name not in ("degree", "metre")
     if unit is None and raster.unit_stated is None and map_unit_is_foot:
         low, high = (f"{v:,.0f}".replace(",", " ") for v in _height_range(dataset))

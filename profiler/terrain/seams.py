@@ -17,7 +17,7 @@ SEAM_POSTS: Final = 100
 #: √(π/2)·1.4826.
 ERROR_OF_MEDIAN: Final = 1.858
 #: A step must exceed the standard error this many times [1]; measured on the same
-#: ground: 2 false steps in 1000 seams, 5 times as many at 3.
+#: ground: no false step on 200 paths, 197 of 200 steps of 3 m found.
 SURE: Final = 4.0
 
 

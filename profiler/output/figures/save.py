@@ -1,0 +1,83 @@
+"""A figure to a file: never half of one, the same bytes for the same answer."""
+
+import os
+import threading
+from pathlib import Path
+from typing import Any, Final
+
+import matplotlib as mpl
+from matplotlib.figure import Figure
+
+from profiler.errors import InputError
+
+#: Pixels an inch of a PNG [1/in]: A4 lying is 1754 pixels wide.
+PNG_DPI: Final = 150.0
+#: What keeps the ids in an SVG the same from run to run.
+SALT: Final = "overbrow"
+
+#: What each kind of file says of itself: nothing that changes from run to run.
+_METADATA: Final[dict[str, dict[str, Any]]] = {
+    ".png": {"Software": None},
+    ".svg": {"Date": None, "Creator": None},
+    ".pdf": {"CreationDate": None, "Creator": None, "Producer": None},
+}
+#: Settings that decide the bytes, whatever the machine's own settings are.
+_SETTINGS: Final = {
+    "svg.hashsalt": SALT,
+    "svg.fonttype": "path",
+    "svg.image_inline": True,
+    "pdf.fonttype": 42,
+    "pdf.compression": 6,
+    "savefig.bbox": None,
+    "savefig.facecolor": "auto",
+    "savefig.transparent": False,
+}
+#: The library's settings are shared by all threads: one save at a time.
+_ONE_AT_A_TIME: Final = threading.Lock()
+
+
+def save_figure(figure: Figure, path: str | Path, *, dpi: float = PNG_DPI) -> None:
+    """Write a figure as PNG, SVG or PDF, by the name's ending.
+
+    Parameters
+    ----------
+    figure : Figure
+        What `draw_figure` gave.
+    path : str or Path
+        The file; an existing one is replaced once the new one is complete.
+    dpi : float [1/in]
+        Pixels an inch of a PNG, and of the map inside an SVG or PDF.
+
+    Raises
+    ------
+    InputError
+        If the ending is another one, the folder does not exist or cannot be written
+        to, or the name is a folder.
+    """
+    target = Path(path)
+    suffix = target.suffix.lower()
+    if suffix not in _METADATA:
+        msg = f'"{target.name}" is no figure file. End the name in .png, .svg or .pdf.'
+        raise InputError(msg)
+    if target.is_dir():
+        msg = f'"{target}" is a folder. Give the figure a file name in it.'
+        raise InputError(msg)
+    if not target.parent.is_dir():
+        msg = f'Folder "{target.parent}" does not exist. Make it first.'
+        raise InputError(msg)
+    beside = target.with_name(f".{target.name}.{os.getpid()}-{threading.get_ident()}")
+    try:
+        _write(figure, beside, suffix, dpi)
+        beside.replace(target)
+    except OSError as error:
+        msg = f'"{target}" cannot be written ({error.strerror or error}).'
+        raise InputError(msg) from error
+    finally:
+        beside.unlink(missing_ok=True)
+
+
+def _write(figure: Figure, path: Path, suffix: str, dpi: float) -> None:
+    with _ONE_AT_A_TIME, mpl.rc_context(_SETTINGS), path.open("wb") as out:
+        figure.savefig(
+            out, format=suffix[1:], dpi=dpi, metadata=_METADATA[suffix], pad_inches=0.0
+        )
