@@ -52,13 +52,12 @@ class Answer(SightLine):
         InputError
             If an option has no such value.
         """
-        from profiler.output.figure import draw_figure  # matplotlib: 0.6 s
-        from profiler.output.plan_map import plan_map
+        from profiler.output.figure import draw_figure, ground_map  # slow: 0.6 s
 
         return draw_figure(
             self,
             headline=headline(self, show_in=show_in),
-            ground_map=plan_map(self, self.terrain),
+            ground_map=ground_map(self.terrain, self.path),
             draw=draw,
             show_in=show_in,
         )

@@ -111,18 +111,37 @@ def _axis_words(figure: Figure, course: Course, scale: Scale) -> None:
     both = ((f"height above sea, {scale.height_unit},", 0.0), (drawn, 1.0))
     for text, k in both:
         page.write(
-            figure, 0.2 + 0.15 * k, area.bottom + area.height / 2.0, text,
-            rotation=90.0, ha="center", va="center", size=page.SMALL,
+            figure,
+            0.2 + 0.15 * k,
+            area.bottom + area.height / 2.0,
+            text,
+            rotation=90.0,
+            ha="center",
+            va="center",
+            size=page.SMALL,
         )
-    cut = ("margin,", f"{scale.height_unit} (cut)" if is_cut(course) else scale.height_unit)
+    cut = (
+        "margin,",
+        f"{scale.height_unit} (cut)" if is_cut(course) else scale.height_unit,
+    )
     for k, text in enumerate(cut):
         page.write(
-            figure, 0.2 + 0.15 * k, strip.bottom + strip.height / 2.0, text,
-            rotation=90.0, ha="center", va="center", size=page.SMALL,
+            figure,
+            0.2 + 0.15 * k,
+            strip.bottom + strip.height / 2.0,
+            text,
+            rotation=90.0,
+            ha="center",
+            va="center",
+            size=page.SMALL,
         )
     page.write(
-        figure, strip.left + strip.width / 2.0, strip.bottom - 0.34,
-        f"{scale.distance_unit} from A", size=page.SMALL, ha="center",
+        figure,
+        strip.left + strip.width / 2.0,
+        strip.bottom - 0.34,
+        f"{scale.distance_unit} from A",
+        size=page.SMALL,
+        ha="center",
     )
 
 
@@ -146,7 +165,12 @@ def _void_words(figure: Figure, course: Course, scale: Scale) -> None:
     wanted = area.left + (middle - low) / (high - low) * area.width
     for k, text in enumerate(words):
         artist = page.write(
-            figure, wanted, area.top - 0.17 - 0.15 * k, text, size=page.SMALL, ha="center"
+            figure,
+            wanted,
+            area.top - 0.17 - 0.15 * k,
+            text,
+            size=page.SMALL,
+            ha="center",
         )
         half = page.width_in(figure, artist) / 2.0 + 0.05
         x = min(max(wanted, area.left + half), area.right - half)
@@ -156,8 +180,13 @@ def _void_words(figure: Figure, course: Course, scale: Scale) -> None:
 def _target(figure: Figure, course: Course, scale: Scale) -> None:
     """The target to its own scale with its words."""
     area, words = page.TARGET_AREA, page.TARGET_TEXT_AREA
-    page.write(figure, words.left, page.ENDS_AREA.top - 0.12, "B to its own scale, "
-               f"{scale.height_unit}", bold=True)
+    page.write(
+        figure,
+        words.left,
+        page.ENDS_AREA.top - 0.12,
+        f"B to its own scale, {scale.height_unit}",
+        bold=True,
+    )
     draw_target(page.area_axes(figure, area, "target"), course, scale)
     for k, text in enumerate(target_lines(course, scale)):
         artist = page.write(

@@ -12,7 +12,11 @@ import numpy as np
 from profiler.model.arrays import BoolArray, FloatArray, IntArray
 from profiler.model.terrain import Interpolation
 from profiler.terrain.lattice import Lattice, PostReader, Window, tiles_within
-from profiler.terrain.pixel_path import ON_POST_CELLS, PixelPath
+from profiler.terrain.pixel_path import (
+    ON_POST_CELLS,
+    PATH_ERROR_CELLS,
+    PixelPath,
+)
 from profiler.terrain.seams import SEAM_POSTS, note_seams
 
 #: Pieces read together [1] and the most posts in one window [1]; our choice: a
@@ -84,15 +88,17 @@ def lay_out(
     same_m = ON_POST_CELLS * min(lattice.cell_m)
     starts, ends = _cut(spans, np.sort(cuts), same_m)
     mid_col, mid_row = pixel.at((starts + ends) / 2.0)
-    inside = (mid_row >= rows[0]) & (mid_row <= rows[1])
+    # the path is known to this; ends printed with 9 decimals stay on the last posts
+    near = PATH_ERROR_CELLS
+    inside = (mid_row >= rows[0] - near) & (mid_row <= rows[1] + near)
     if not whole_turn:
-        inside &= (mid_col >= cols[0]) & (mid_col <= cols[1])
-    col = np.floor(mid_col + edge).astype(np.int64)
+        inside &= (mid_col >= cols[0] - near) & (mid_col <= cols[1] + near)
+    last = 1 if edge else 2
     row = np.floor(mid_row + edge).astype(np.int64)
-    if edge == 0.0:
-        row = np.minimum(row, lattice.rows[1] - 2)
-        if not whole_turn:
-            col = np.minimum(col, lattice.cols[1] - 2)
+    row = np.clip(row, lattice.rows[0], lattice.rows[1] - last)
+    col = np.floor(mid_col + edge).astype(np.int64)
+    if not whole_turn:
+        col = np.clip(col, lattice.cols[0], lattice.cols[1] - last)
     part_col = np.empty((starts.size, 3))
     part_row = np.empty((starts.size, 3))
     for k, dist in enumerate((starts, (starts + ends) / 2.0, ends)):

@@ -204,7 +204,7 @@ def draw_plan(ax: Axes, plan: GroundMap, marks: list[Mark], length_m: float) -> 
     ax.plot(x, y, color=page.PAPER, lw=CASING, zorder=page.Z_EDGE)
     ax.plot(x, y, color=page.SIGHT, lw=COURSE, zorder=page.Z_EDGE, label="path")
     even = np.linspace(0.0, length_m, x.size)
-    for mark in marks:
+    for mark in (m for m in reversed(marks) if m.symbol.isdigit()):
         at = [float(np.interp(mark.distance_m, even, c)) for c in (x, y)]
         ax.plot(
             *at,
@@ -213,7 +213,7 @@ def draw_plan(ax: Axes, plan: GroundMap, marks: list[Mark], length_m: float) -> 
             ms=DOT,
             mec=page.EDGE,
             mew=0.6,
-            mfc=page.DISC if mark.symbol.isdigit() else page.PAPER,
+            mfc=page.DISC,
             zorder=page.Z_MARK,
         )
     _letters(ax, x, y)

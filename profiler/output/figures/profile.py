@@ -36,7 +36,7 @@ MOST_TICKS: Final = 6
 #: Letters A and B stand so far from their mark [pt].
 LETTER_OFF: Final = 10.0
 #: Name of the needed-height marks, for the key.
-NEEDED_LABEL: Final = "least height that clears"
+NEEDED_LABEL: Final = "needed height"
 
 
 class Limits(NamedTuple):
@@ -217,7 +217,7 @@ def _ground(ax: Axes, trace: Trace, limits: Limits, scale: Scale) -> None:
         hatch="//////",
         lw=0.0,
         zorder=page.Z_GROUND + 1,
-        label="ground not seen",
+        label="not seen",
     )
     ax.plot(hx, hy, color=page.EDGE, lw=THIN, zorder=page.Z_EDGE)
     ax.plot(

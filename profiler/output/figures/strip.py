@@ -15,7 +15,7 @@ from profiler.output.figures.profile import Limits
 from profiler.output.figures.scale import Scale, nice_ticks, tick_texts
 
 #: The strip shows margins up to so many times the lowest one [1]; our choice.
-MARGIN_TIMES: Final = 4.0
+MARGIN_TIMES: Final = 8.0
 #: and at least this much on either side of zero [m]; our choice.
 LEAST_MARGIN_M: Final = 2.0
 #: Room below and above the curve [1 of range].
@@ -30,6 +30,8 @@ LEADER: Final = 0.7
 #: Diameter of a disc and least distance between two [in].
 DISC_IN: Final = 0.185
 DISC_GAP_IN: Final = 0.205
+#: Letters in a smaller disc [pt].
+SMALL_LETTERS: Final = 7.0
 #: Ring of the decisive disc and of the others [pt].
 RING_DECIDES: Final = 1.8
 RING: Final = 0.6
@@ -158,14 +160,16 @@ def _dot(figure: Figure, x_in: float, y_in: float) -> None:
     )
 
 
-def draw_disc(figure: Figure, x_in: float, y_in: float, mark: Mark) -> Ellipse:
+def draw_disc(
+    figure: Figure, x_in: float, y_in: float, mark: Mark, *, size_in: float = DISC_IN
+) -> Ellipse:
     """A disc with its number; a letter stands in an open one."""
     width, height = page.PAGE_IN
     numbered = mark.symbol.isdigit()
     disc = Ellipse(
         (x_in / width, y_in / height),
-        DISC_IN / width,
-        DISC_IN / height,
+        size_in / width,
+        size_in / height,
         facecolor=page.DISC if numbered else page.PAPER,
         edgecolor=page.EDGE if numbered else page.DISC,
         lw=RING_DECIDES if mark.decides or not numbered else RING,
@@ -178,7 +182,7 @@ def draw_disc(figure: Figure, x_in: float, y_in: float, mark: Mark) -> Ellipse:
         x_in,
         y_in,
         mark.symbol,
-        size=page.SMALL,
+        size=page.SMALL if size_in >= DISC_IN else SMALL_LETTERS,
         bold=True,
         ha="center",
         va="center_baseline",

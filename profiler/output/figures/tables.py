@@ -1,7 +1,7 @@
 """The words around the drawings: ends, key, table of discs, needed heights, footer."""
 
 from collections.abc import Sequence
-from typing import Final, NamedTuple
+from typing import Any, Final, NamedTuple
 
 from matplotlib.axes import Axes
 from matplotlib.figure import Figure
@@ -15,17 +15,21 @@ from profiler.output.figures.course import Course
 from profiler.output.figures.marks import Mark
 from profiler.output.figures.profile import DASH_DOT, SEA_DASHES, THICK, THIN, Limits
 from profiler.output.figures.scale import Scale, times_text
-from profiler.output.figures.strip import DISC_IN, draw_disc
-from profiler.output.numbers import latitude, longitude, ratio
+from profiler.output.figures.strip import draw_disc
+from profiler.output.numbers import DOWN, UP, latitude, longitude, ratio
 
 #: Characters of a name before it is cut, of a file's name, and of its hash [1].
 NAME_MOST: Final = 40
 FILE_MOST: Final = 48
 HASH_SHOWN: Final = 8
 #: Length of a sample line in the key, its gap to the words, and between entries [in].
-SAMPLE_IN: Final = 0.34
+SAMPLE_IN: Final = 0.32
 KEY_GAP_IN: Final = 0.06
-KEY_APART_IN: Final = 0.22
+KEY_APART_IN: Final = 0.24
+#: Diameter of a disc in the table [in].
+TABLE_DISC_IN: Final = 0.138
+#: Middle of small letters above their baseline [1 of their size].
+MIDDLE: Final = 0.36
 #: Left edges of the table's columns from its own [in]; numbers end at theirs.
 DISTANCE_END_IN: Final = 0.78
 GROUND_IN: Final = 0.92
@@ -41,7 +45,9 @@ WHOLE_POSTS_M: Final = 9.5
 def short(text: str, most: int) -> str:
     """A text of at most so many characters, the rest an ellipsis."""
     joined = " ".join(text.split())
-    return joined if len(joined) <= most else joined[: most - 1].rstrip() + page.ELLIPSIS
+    return (
+        joined if len(joined) <= most else joined[: most - 1].rstrip() + page.ELLIPSIS
+    )
 
 
 def names(line: SightLine) -> tuple[str, str]:
@@ -54,13 +60,20 @@ def draw_head(figure: Figure, headline: tuple[str, str]) -> None:
     """The first line in two short ones."""
     area = page.HEAD_AREA
     first = page.write(
-        figure, area.left, area.top - page.HEAD / page.PT_PER_IN, headline[0].strip(),
-        size=page.HEAD, bold=True,
+        figure,
+        area.left,
+        area.top - page.HEAD / page.PT_PER_IN,
+        headline[0].strip().rstrip(":;,"),
+        size=page.HEAD,
+        bold=True,
     )
     page.fit(figure, first, area.width, least_pt=page.HEAD_LEAST)
     text = headline[1].strip()
     second = page.write(
-        figure, area.left, area.bottom + 0.06, text[:1].upper() + text[1:],
+        figure,
+        area.left,
+        area.bottom + 0.06,
+        text[:1].upper() + text[1:],
         size=page.SUBHEAD,
     )
     page.fit(figure, second, area.width, least_pt=page.SIZE)
@@ -88,9 +101,10 @@ def draw_ends(figure: Figure, line: SightLine, scale: Scale) -> None:
         x = area.left if left else area.right
         what = "eye" if left else "top"
         top = area.top - page.SIZE / page.PT_PER_IN
-        text = f"{letter}  {name}" if left else f"{name}  {letter}"
+        text = f"{letter}: {name}"
         for text_, y, bold in (
-            (text, top, True), (end_text(end, what, scale), area.bottom + 0.04, False),
+            (text, top, True),
+            (end_text(end, what, scale), area.bottom + 0.04, False),
         ):
             artist = page.write(figure, x, y, text_, bold=bold, **side)
             page.fit(figure, artist, half, least_pt=page.SMALL)
@@ -100,7 +114,7 @@ class Entry(NamedTuple):
     """One sample of the key."""
 
     label: str
-    line: dict[str, object] | None
+    line: dict[str, Any] | None
     """Look of a line; None draws a patch of ``hatch``."""
     hatch: str
 
@@ -109,10 +123,10 @@ _ENTRIES: Final = (
     Entry("sight line", {"color": page.SIGHT, "lw": 1.7}, ""),
     Entry("grazing ray", {"color": page.GRAZING, "lw": 1.7, "ls": DASH_DOT}, ""),
     Entry("ground seen", {"color": page.EDGE, "lw": THICK}, ""),
-    Entry("ground not seen", None, "//////"),
+    Entry("not seen", None, "//////"),
     Entry("no ground known", None, "xxxx"),
     Entry("sea level", {"color": page.QUIET, "lw": THIN, "ls": SEA_DASHES}, ""),
-    Entry("least height that clears", {"color": page.EDGE, "lw": 1.7}, "_"),
+    Entry("needed height", {"color": page.EDGE, "lw": 1.7}, "_"),
     Entry("given point", {"color": page.EDGE, "lw": 0.0, "marker": "+"}, ""),
 )
 
@@ -121,26 +135,31 @@ def draw_key(figure: Figure, ax: Axes) -> None:
     """Samples of what the profile shows, in one row, only what is there."""
     present = set(ax.get_legend_handles_labels()[1])
     area = page.KEY_AREA
-    x, y = area.left, area.bottom + 0.05
-    for entry in _ENTRIES:
-        if entry.label not in present:
-            continue
+    y = area.bottom + 0.05
+    entries = [entry for entry in _ENTRIES if entry.label in present]
+    texts = [page.write(figure, 0.0, y, e.label, size=page.SMALL) for e in entries]
+    wide = [SAMPLE_IN + KEY_GAP_IN + page.width_in(figure, text) for text in texts]
+    free = (area.width - sum(wide)) / max(len(wide) - 1, 1)
+    x = area.left
+    for entry, text, width in zip(entries, texts, wide, strict=True):
         _sample(figure, entry, x, y)
-        text = page.write(
-            figure, x + SAMPLE_IN + KEY_GAP_IN, y, entry.label, size=page.SMALL
-        )
-        x += SAMPLE_IN + KEY_GAP_IN + page.width_in(figure, text) + KEY_APART_IN
+        text.set_x((x + SAMPLE_IN + KEY_GAP_IN) / page.PAGE_IN[0])
+        x += width + min(KEY_APART_IN, free)
 
 
 def _sample(figure: Figure, entry: Entry, x: float, y: float) -> None:
     wide, tall = page.PAGE_IN
-    middle = y + page.SMALL / page.PT_PER_IN * 0.36
+    middle = y + page.SMALL / page.PT_PER_IN * MIDDLE
     if entry.line is None:
         figure.add_artist(
             Rectangle(
-                (x / wide, (middle - 0.05) / tall), SAMPLE_IN / wide, 0.1 / tall,
+                (x / wide, (middle - 0.05) / tall),
+                SAMPLE_IN / wide,
+                0.1 / tall,
                 facecolor=page.PAPER if entry.hatch == "xxxx" else page.GROUND,
-                edgecolor=page.HATCHING, hatch=entry.hatch, lw=THIN,
+                edgecolor=page.HATCHING,
+                hatch=entry.hatch,
+                lw=THIN,
             )
         )
         return
@@ -149,7 +168,7 @@ def _sample(figure: Figure, entry: Entry, x: float, y: float) -> None:
         Line2D(
             [(x + inset) / wide, (x + SAMPLE_IN - inset) / wide],
             [middle / tall] * 2,
-            **entry.line,  # type: ignore[arg-type]
+            **entry.line,
         )
     )
 
@@ -163,13 +182,23 @@ def draw_table(
 
     def row(texts: Sequence[str], color: str) -> None:
         places = (
-            (DISTANCE_END_IN, "right"), (GROUND_IN, "left"), (LATITUDE_END_IN, "right"),
-            (LONGITUDE_END_IN, "right"), (NOTE_IN, "left"),
+            (DISTANCE_END_IN, "right"),
+            (GROUND_IN, "left"),
+            (LATITUDE_END_IN, "right"),
+            (LONGITUDE_END_IN, "right"),
+            (NOTE_IN, "left"),
         )
         for text, (x, side) in zip(texts, places, strict=True):
             if text:
-                page.write(figure, area.left + x, y, text, size=page.SMALL, ha=side,
-                           color=color)
+                page.write(
+                    figure,
+                    area.left + x,
+                    y,
+                    text,
+                    size=page.SMALL,
+                    ha=side,
+                    color=color,
+                )
 
     row((scale.distance_unit, "ground stands", "latitude", "longitude", ""), page.QUIET)
     for mark in marks:
@@ -185,8 +214,8 @@ def draw_table(
             ),
             page.EDGE,
         )
-        middle = y + page.SMALL / page.PT_PER_IN * 0.36
-        draw_disc(figure, area.left + DISC_IN / 2.0, middle, mark)
+        middle = y + page.SMALL / page.PT_PER_IN * MIDDLE
+        draw_disc(figure, area.left + 0.1, middle, mark, size_in=TABLE_DISC_IN)
     if left_out:
         y -= ROW_IN
         least = max(m.margin_m for m in marks if m.symbol.isdigit())
@@ -200,20 +229,23 @@ def needed_lines(line: SightLine, scale: Scale) -> list[str]:
     blocked = line.verdict == Verdict.BLOCKED
     lines = []
     for letter, agl, end in (
-        ("A", needed.from_agl_m, line.from_), ("B", needed.to_agl_m, line.to),
+        ("A", needed.from_agl_m, line.from_),
+        ("B", needed.to_agl_m, line.to),
     ):
         if agl is not None:
             now = "" if end.agl_m is None else f" (now {show.height(end.agl_m)})"
-            lines.append(f"{letter} at {show.height(agl, up=True)}{now}")
+            lines.append(f"{letter} at {show.height(agl, rounding=UP)}{now}")
     if blocked and needed.both_extra_m is not None:
-        lines.append(f"both {show.height(needed.both_extra_m, up=True)} higher")
+        lines.append(f"both {show.height(needed.both_extra_m, rounding=UP)} higher")
     if needed.dem_bias_m is not None:
-        size = show.height(abs(needed.dem_bias_m), up=needed.dem_bias_m < 0.0)
-        way = "lower" if needed.dem_bias_m < 0.0 else "higher, at most"
+        lower = needed.dem_bias_m < 0.0
+        size = show.height(abs(needed.dem_bias_m), rounding=UP if lower else DOWN)
+        way = "lower" if lower else "higher, at most"
         lines.append(f"all ground between {size} {way}")
     if needed.kr is not None and needed.ke is not None:
         least = "" if blocked else "at least "
-        lines.append(f"air of {least}kr {needed.kr:.3f} = ke {needed.ke:.3f}")
+        kr, ke = (ratio(v, rounding=UP) for v in (needed.kr, needed.ke))
+        lines.append(f"air of {least}kr {kr} = ke {ke}")
     return lines
 
 
@@ -272,7 +304,11 @@ def draw_foot(figure: Figure, course: Course, limits: Limits, scale: Scale) -> N
     step = page.SMALL * page.LINE_SPACING / page.PT_PER_IN
     for k, text in enumerate(reversed(lines)):
         artist = page.write(
-            figure, area.left, area.bottom + 0.02 + k * step, text, size=page.SMALL,
+            figure,
+            area.left,
+            area.bottom + 0.02 + k * step,
+            text,
+            size=page.SMALL,
             color=page.QUIET if k else page.EDGE,
         )
         page.fit(figure, artist, area.width, least_pt=page.SMALL)
