@@ -4,6 +4,7 @@
 PROJ, turns them into the file's pixels and interpolates with scipy.
 """
 
+from functools import lru_cache
 from pathlib import Path
 from typing import Any
 
@@ -58,14 +59,21 @@ def pixels(transform: Any, x: Floats, y: Floats) -> tuple[Floats, Floats]:
     return t.a * x + t.b * y + t.c, t.d * x + t.e * y + t.f
 
 
+@lru_cache(maxsize=8)
+def _opened(file: Path, written_ns: int) -> tuple[Floats, Any, Transformer]:
+    """Posts, transform and the way to the map; kept until the file is written anew."""
+    assert written_ns > 0
+    with rasterio.open(file) as data:
+        to_crs = Transformer.from_crs(4326, data.crs.to_wkt(), always_xy=True)
+        return data.read(1).astype(float), data.transform, to_crs
+
+
 def exact(file: Path, start: Pair, end: Pair, dist_m: Floats) -> Floats:
     """Bilinear ground of one file on the geodesic, by PROJ and scipy."""
     lat, lon = geodesic_points(start, end, dist_m)
-    with rasterio.open(file) as data:
-        posts = data.read(1).astype(float)
-        to_crs = Transformer.from_crs(4326, data.crs.to_wkt(), always_xy=True)
-        x, y = to_crs.transform(lon, lat)
-        col, row = pixels(data.transform, np.asarray(x), np.asarray(y))
+    posts, transform, to_crs = _opened(file, file.stat().st_mtime_ns)
+    x, y = to_crs.transform(lon, lat)
+    col, row = pixels(transform, np.asarray(x), np.asarray(y))
     ground: Floats = map_coordinates(posts, [row - 0.5, col - 0.5], order=1)
     return ground
 

@@ -72,8 +72,6 @@ def _from_lattice(
     if not inside.any():
         return found
     rows, cols = (np.round(v[inside]).astype(np.int64) for v in (row, col))
-    rows = np.clip(rows, lattice.rows[0], lattice.rows[1] - 1)
-    cols = np.clip(cols, lattice.cols[0], lattice.cols[1] - 1)
     top, left = int(rows.min()), int(cols.min())
     size = (int(rows.max()) - top + 1, int(cols.max()) - left + 1)
     step = max(1, -(-max(size) // MOST_POSTS))
@@ -83,10 +81,9 @@ def _from_lattice(
 
 
 def _inside(limits: tuple[int, int], coordinate: FloatArray) -> BoolArray:
-    """Whether coordinates lie on a post's cell, first to last; not where infinite."""
-    inside: BoolArray = (coordinate >= limits[0] - 0.5) & (
-        coordinate <= limits[1] - 0.5
-    )
+    """Whether the nearest posts are among the grid's; not where infinite."""
+    nearest = np.round(coordinate)
+    inside: BoolArray = (nearest >= limits[0]) & (nearest < limits[1])
     return inside
 
 
