@@ -1,5 +1,7 @@
 """The figure of an answer: profile, margins, target and plan on one A4 page."""
 
+from typing import Final
+
 from matplotlib.figure import Figure
 
 from profiler.model import SightLine
@@ -20,7 +22,7 @@ from profiler.output.figures.plan import (
     ground_map,
 )
 from profiler.output.figures.profile import draw_profile, limits_of
-from profiler.output.figures.save import PNG_DPI, save_figure
+from profiler.output.figures.save import save_figure
 from profiler.output.figures.scale import Scale, scale_of
 from profiler.output.figures.strip import draw_lane, draw_strip, is_cut
 from profiler.output.figures.tables import (
@@ -31,17 +33,27 @@ from profiler.output.figures.tables import (
     draw_needed,
     draw_table,
 )
-from profiler.output.figures.target import draw_target, target_lines
+from profiler.output.figures.target import draw_target, has_drawing, target_lines
+from profiler.output.numbers import DOWN
 
 __all__ = [
     "CURVED_SEA",
     "LEVEL_SEA",
-    "PNG_DPI",
     "GroundMap",
     "draw_figure",
     "ground_map",
     "save_figure",
 ]
+
+
+#: Words beside the axes stand so far from the page's edge [in].
+AXIS_WORDS_IN: Final = 0.15
+#: Distance between two lines of small letters [in].
+LINE_IN: Final = 0.15
+#: Words under the distances stand so far below them [in].
+DISTANCE_WORDS_IN: Final = 0.34
+#: Words that run upwards [deg].
+QUARTER_TURN_DEG: Final = 90.0
 
 
 def draw_figure(
@@ -106,90 +118,85 @@ def draw_figure(
 
 def _axis_words(figure: Figure, course: Course, scale: Scale) -> None:
     """What the axes count."""
-    area, strip = page.PROFILE_AREA, page.STRIP_AREA
+    unit, strip = scale.height_unit, page.STRIP_AREA
     drawn = "with the earth's curve drawn" if course.curved else "the sea drawn level"
-    both = ((f"height above sea, {scale.height_unit},", 0.0), (drawn, 1.0))
-    for text, k in both:
-        page.write(
-            figure,
-            0.2 + 0.15 * k,
-            area.bottom + area.height / 2.0,
-            text,
-            rotation=90.0,
-            ha="center",
-            va="center",
-            size=page.SMALL,
-        )
-    cut = (
-        "margin,",
-        f"{scale.height_unit} (cut)" if is_cut(course) else scale.height_unit,
-    )
-    for k, text in enumerate(cut):
-        page.write(
-            figure,
-            0.2 + 0.15 * k,
-            strip.bottom + strip.height / 2.0,
-            text,
-            rotation=90.0,
-            ha="center",
-            va="center",
-            size=page.SMALL,
-        )
+    for area, words in (
+        (page.PROFILE_AREA, (f"height above sea, {unit},", drawn)),
+        (strip, (f"margin, {unit}", "cut above" if is_cut(course) else "")),
+    ):
+        for k, text in enumerate(words):
+            page.write(
+                figure,
+                AXIS_WORDS_IN + LINE_IN * k,
+                area.bottom + area.height / 2.0,
+                text,
+                rotation=QUARTER_TURN_DEG,
+                ha="center",
+                va="center",
+                size=page.SMALL,
+            )
     page.write(
         figure,
         strip.left + strip.width / 2.0,
-        strip.bottom - 0.34,
+        strip.bottom - DISTANCE_WORDS_IN,
         f"{scale.distance_unit} from A",
         size=page.SMALL,
         ha="center",
     )
 
 
-def _void_words(figure: Figure, course: Course, scale: Scale) -> None:
-    """Where no ground is known, and what ground would block there."""
-    runs = void_runs(course)
-    if not runs:
-        return
-    void, show = course.line.void, scale.show
-    longest = max(runs, key=lambda run: run[1] - run[0])
-    start, end = longest if void is None else (void.start_m, void.end_m)
-    words = [
-        f"no ground known, {show.bare_distance(start)} to {show.distance(end)}"
-        + (f" and {len(runs) - 1} more" if len(runs) > 1 else ""),
-    ]
+def void_words(course: Course, scale: Scale) -> tuple[list[str], float]:
+    """Where no ground is known and what would block there; middle of the void [m]."""
+    runs, void, show = void_runs(course), course.line.void, scale.show
+    start, end = max(runs, key=lambda run: run[1] - run[0])
     if void is not None:
-        words.append(f"ground above {show.height(void.blocks_above_m)} would block")
+        start, end = void.start_m, void.end_m
+    more = f" and {len(runs) - 1} more" if len(runs) > 1 else ""
+    where = f"{show.bare_distance(start)} to {show.distance(end)}"
+    words = [f"no ground known, {where}{more}"]
+    if void is not None:
+        above = show.height(void.blocks_above_m, rounding=DOWN)
+        words.append(f"ground above {above} would block")
+    return words, (start + end) / 2.0
+
+
+def _void_words(figure: Figure, course: Course, scale: Scale) -> None:
+    """The void's words in the room above the profile, over the void if they fit."""
+    if not void_runs(course):
+        return
+    words, middle_m = void_words(course, scale)
     area = page.PROFILE_AREA
     low, high = scale.x_limits()
-    middle = (start + end) / 2.0 / scale.distance_unit_m
+    middle = middle_m / scale.distance_unit_m
     wanted = area.left + (middle - low) / (high - low) * area.width
     for k, text in enumerate(words):
         artist = page.write(
             figure,
             wanted,
-            area.top - 0.17 - 0.15 * k,
+            area.top - LINE_IN * (k + 1) - page.BASELINE_IN / 2.0,
             text,
             size=page.SMALL,
             ha="center",
+            bbox={"boxstyle": "square,pad=0.05", "fc": page.PAPER, "ec": "none"},
         )
-        half = page.width_in(figure, artist) / 2.0 + 0.05
+        half = page.width_in(figure, artist) / 2.0 + page.BASELINE_IN
         x = min(max(wanted, area.left + half), area.right - half)
         artist.set_x(x / page.PAGE_IN[0])
 
 
 def _target(figure: Figure, course: Course, scale: Scale) -> None:
-    """The target to its own scale with its words."""
-    area, words = page.TARGET_AREA, page.TARGET_TEXT_AREA
-    page.write(
-        figure,
-        words.left,
-        page.ENDS_AREA.top - 0.12,
-        f"B to its own scale, {scale.height_unit}",
-        bold=True,
-    )
-    draw_target(page.area_axes(figure, area, "target"), course, scale)
+    """The target to its own scale with its words; a bare point needs words only."""
+    words = page.TARGET_TEXT_AREA
+    head = page.ENDS_AREA.top - page.SIZE / page.PT_PER_IN
+    drawn = has_drawing(course)
+    title = f"B to its own scale, {scale.height_unit}" if drawn else "B"
+    page.write(figure, words.left, head, title, bold=True)
+    top = words.top if drawn else head - page.BASELINE_IN
+    if drawn:
+        axes = page.area_axes(figure, page.TARGET_AREA, "target")
+        draw_target(axes, course, scale)
     for k, text in enumerate(target_lines(course, scale)):
         artist = page.write(
-            figure, words.left, words.top - 0.13 - 0.15 * k, text, size=page.SMALL
+            figure, words.left, top - LINE_IN * (k + 1), text, size=page.SMALL
         )
         page.fit(figure, artist, words.width, least_pt=page.SMALL)

@@ -62,7 +62,9 @@ def _from_lattice(
 ) -> FloatArray:
     """Heights at (k,) places from one grid, NaN outside it."""
     x, y = lattice.crs.to_crs(lat_deg, lon_deg)
-    col, row = lattice.to_posts(x, y)
+    with np.errstate(invalid="ignore"):
+        # where the projection has no value coordinates are infinite
+        col, row = lattice.to_posts(x, y)
     if lattice.crs.is_geographic:
         turn = lattice.crs.turn / abs(lattice.affine.dx_col)
         middle = (lattice.cols[0] + lattice.cols[1] - 1) / 2.0

@@ -5,7 +5,7 @@ from typing import Final
 
 import numpy as np
 
-from profiler.model import Place, SightLine, Stretch
+from profiler.model import Place, Stretch
 from profiler.output.figures.course import Course
 
 #: Blocked stretches that get a disc when there are no more of them [1].
@@ -58,8 +58,8 @@ def marks_of(course: Course) -> tuple[list[Mark], int]:
         worst = sorted(numbered, key=lambda pair: pair[1].worst_margin_m)
         shown = sorted(worst[:WORST_STRETCHES], key=lambda pair: pair[0])
     marks = [_of_stretch(course, number, s) for number, s in shown]
-    if line.decisive is not None and not any(m.decides for m in marks):
-        marks.insert(0, _of_place("1" if not marks else "D", line.decisive, "tightest"))
+    if line.decisive is not None and not marks:
+        marks.append(_of_place("1", line.decisive, "tightest"))
     others = ((FIRST_BLOCK, line.first_block), (HORIZON, line.horizon))
     for symbol, place in others:
         if place is not None and not _is_marked(marks, place):
@@ -88,25 +88,20 @@ def _of_place(symbol: str, place: Place, note: str) -> Mark:
 
 
 def _of_stretch(course: Course, number: int, stretch: Stretch) -> Mark:
-    decides = _holds_decisive(course.line, stretch)
+    place = course.line.decisive
+    if place is not None and stretch.start_m <= place.distance_m <= stretch.end_m:
+        return _of_place(str(number), place, "decides")
     sight = float(course.sight_m(np.array([stretch.worst_at_m]))[0])
     return Mark(
         symbol=str(number),
-        decides=decides,
+        decides=False,
         distance_m=stretch.worst_at_m,
         ground_m=sight - stretch.worst_margin_m,
         margin_m=stretch.worst_margin_m,
         lat_deg=stretch.lat_deg,
         lon_deg=stretch.lon_deg,
-        note="decides" if decides else "",
+        note="",
     )
-
-
-def _holds_decisive(line: SightLine, stretch: Stretch) -> bool:
-    place = line.decisive
-    if place is None:
-        return False
-    return abs(place.distance_m - stretch.worst_at_m) <= SAME_M
 
 
 def spread(wanted: list[float], gap: float, low: float, high: float) -> list[float]:

@@ -1,18 +1,23 @@
 """The page of a figure: its size, its areas by hand, its colours and its letters."""
 
+from functools import lru_cache
 from pathlib import Path
-from typing import Any, Final, NamedTuple
+from typing import Any, Final, Literal, NamedTuple
 
 import matplotlib as mpl
 from matplotlib.artist import Artist
 from matplotlib.axes import Axes
-from matplotlib.backends.backend_agg import FigureCanvasAgg, RendererAgg
+from matplotlib.backends.backend_agg import FigureCanvasAgg
 from matplotlib.figure import Figure
 from matplotlib.font_manager import FontProperties, get_font
+from matplotlib.lines import Line2D
 from matplotlib.text import Text
 
 #: A4 lying [in]; ISO 216.
 PAGE_IN: Final = (11.69, 8.27)
+#: Pixels an inch of a PNG [1/in]: A4 lying is 1753 pixels wide. Text is measured at
+#: the same, so that each is measured once.
+PNG_DPI: Final = 150.0
 #: Points in an inch [pt].
 PT_PER_IN: Final = 72.0
 
@@ -34,9 +39,22 @@ SMALL: Final = 8.0
 HEAD: Final = 15.0
 SUBHEAD: Final = 11.5
 #: The headline shrinks to this before it is cut [pt].
-HEAD_LEAST: Final = 10.0
+HEAD_LEAST: Final = 11.0
 #: Distance between lines of text over their size [1].
 LINE_SPACING: Final = 1.24
+
+#: Widths of lines: frames, thin and thick ground, rays [pt].
+FRAME_WIDTH: Final = 0.6
+THIN: Final = 0.7
+THICK: Final = 2.4
+RAY_WIDTH: Final = 1.7
+#: Dash-dot of the grazing ray and dashes of the sea [pt].
+DASH_DOT: Final = (0, (6.0, 2.0, 1.2, 2.0))
+SEA_DASHES: Final = (0, (9.0, 3.0))
+#: Size of ring A and square B, ticks and their distance to numbers [pt].
+MARKER: Final = 8.5
+TICK: Final = 3.0
+TICK_PAD: Final = 2.5
 
 #: Layers: what is drawn over what.
 Z_LEVEL: Final = 1
@@ -44,6 +62,9 @@ Z_GROUND: Final = 2
 Z_EDGE: Final = 4
 Z_RAY: Final = 5
 Z_MARK: Final = 7
+
+#: Lowest baseline of a text above the bottom of its area [in].
+BASELINE_IN: Final = 0.05
 
 ELLIPSIS: Final = "…"
 #: Drawn in place of a character that the font has not.
@@ -72,12 +93,12 @@ class Area(NamedTuple):
 
 
 #: The areas of the page [in]; chosen by eye.
-HEAD_AREA: Final = Area(0.3, 7.52, 11.09, 0.55)
-ENDS_AREA: Final = Area(0.85, 7.0, 8.05, 0.34)
-KEY_AREA: Final = Area(0.85, 6.74, 8.05, 0.18)
-PROFILE_AREA: Final = Area(0.85, 3.72, 8.05, 2.96)
-LANE_AREA: Final = Area(0.85, 3.4, 8.05, 0.32)
-STRIP_AREA: Final = Area(0.85, 2.62, 8.05, 0.78)
+HEAD_AREA: Final = Area(0.3, 7.47, 11.09, 0.66)
+ENDS_AREA: Final = Area(0.9, 7.0, 8.0, 0.34)
+KEY_AREA: Final = Area(0.9, 6.74, 8.0, 0.18)
+PROFILE_AREA: Final = Area(0.9, 3.72, 8.0, 2.96)
+LANE_AREA: Final = Area(0.9, 3.4, 8.0, 0.32)
+STRIP_AREA: Final = Area(0.9, 2.62, 8.0, 0.78)
 TABLE_AREA: Final = Area(0.3, 0.66, 5.5, 1.56)
 NEEDED_AREA: Final = Area(6.0, 0.66, 2.9, 1.56)
 TARGET_AREA: Final = Area(9.72, 4.5, 1.67, 2.3)
@@ -89,7 +110,7 @@ FOOT_AREA: Final = Area(0.3, 0.13, 11.09, 0.42)
 
 def new_page() -> Figure:
     """An empty A4 page with a canvas that can measure text; no pyplot."""
-    figure = Figure(figsize=PAGE_IN, facecolor=PAPER)
+    figure = Figure(figsize=PAGE_IN, dpi=PNG_DPI, facecolor=PAPER)
     FigureCanvasAgg(figure)
     return figure
 
@@ -102,9 +123,15 @@ def letters(size: float = SIZE, *, bold: bool = False) -> FontProperties:
 
 def plain(text: str) -> str:
     """A text on one line in characters that the font can draw."""
-    known = get_font(str(_FONTS / "DejaVuSans.ttf")).get_charmap()
+    known = _known_characters()
     joined = " ".join(text.split())
     return "".join(c if ord(c) in known else MISSING for c in joined)
+
+
+@lru_cache(maxsize=1)
+def _known_characters() -> frozenset[int]:
+    """Code points that the font can draw."""
+    return frozenset(get_font(str(_FONTS / "DejaVuSans.ttf")).get_charmap())
 
 
 def area_axes(figure: Figure, area: Area, label: str) -> Axes:
@@ -147,12 +174,12 @@ def write(
     return artist
 
 
-def renderer_of(figure: Figure) -> RendererAgg:
-    """The renderer that measures text on a page."""
+def renderer_of(figure: Figure) -> Any:
+    """The renderer that measures text on a page; the library types it loosely."""
     canvas = figure.canvas
     if not isinstance(canvas, FigureCanvasAgg):
         canvas = FigureCanvasAgg(figure)
-    return canvas.get_renderer()
+    return canvas.get_renderer()  # type: ignore[no-untyped-call]
 
 
 def width_in(figure: Figure, artist: Artist) -> float:
@@ -161,18 +188,58 @@ def width_in(figure: Figure, artist: Artist) -> float:
     return float(box.width) / float(figure.dpi)
 
 
-def fit(figure: Figure, artist: Text, most_in: float, *, least_pt: float) -> Text:
+def fit(
+    figure: Figure, artist: Text, most_in: float, *, least_pt: float, cut: bool = True
+) -> Text:
     """The text made smaller, then cut with an ellipsis, until it is narrow enough."""
     wide = width_in(figure, artist)
     if wide > most_in:
         size = float(artist.get_fontsize())
         artist.set_fontsize(max(least_pt, size * most_in / wide))
     text = artist.get_text()
-    while width_in(figure, artist) > most_in and len(text) > 1:
+    while cut and width_in(figure, artist) > most_in and len(text) > 1:
         keep = int(len(text) * most_in / width_in(figure, artist))
         text = text[: max(1, min(keep, len(text) - 1))].rstrip()
         artist.set_text(text + ELLIPSIS)
     return artist
+
+
+def spot(
+    ax: Axes, at: tuple[float, float], shape: str, *, label: str, **look: Any
+) -> Line2D:
+    """One open mark on axes; ``look`` overrides size, face and width."""
+    settings: dict[str, Any] = {
+        "ms": MARKER,
+        "mfc": "none",
+        "mec": EDGE,
+        "mew": RAY_WIDTH,
+        "zorder": Z_MARK,
+    }
+    settings.update(look)
+    return ax.plot(*at, ls="none", marker=shape, label=label, **settings)[0]
+
+
+def letter_beside(
+    ax: Axes,
+    letter: str,
+    at: tuple[float, float],
+    off_pt: tuple[float, float],
+    *,
+    ha: Literal["left", "center", "right"] = "center",
+    bbox: dict[str, Any] | None = None,
+) -> Text:
+    """A bold letter so far from a place on axes [pt]."""
+    return ax.annotate(
+        letter,
+        at,
+        xytext=off_pt,
+        textcoords="offset points",
+        ha=ha,
+        va="center",
+        fontproperties=letters(SIZE, bold=True),
+        zorder=Z_MARK,
+        bbox=bbox,
+    )
 
 
 def style_ticks(axes: Axes) -> None:
@@ -180,6 +247,8 @@ def style_ticks(axes: Axes) -> None:
     for label in (*axes.get_xticklabels(), *axes.get_yticklabels()):
         label.set_fontproperties(letters(SMALL))
         label.set_parse_math(False)
-    axes.tick_params(length=3.0, width=0.6, pad=2.5, labelsize=SMALL, colors=EDGE)
+    axes.tick_params(
+        length=TICK, width=FRAME_WIDTH, pad=TICK_PAD, labelsize=SMALL, colors=EDGE
+    )
     for spine in axes.spines.values():
-        spine.set_linewidth(0.6)
+        spine.set_linewidth(FRAME_WIDTH)

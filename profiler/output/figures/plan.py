@@ -2,13 +2,14 @@
 
 import math
 from dataclasses import dataclass
-from typing import Final
+from typing import Any, Final
 
 import numpy as np
 from matplotlib.axes import Axes
 from matplotlib.figure import Figure
 from matplotlib.lines import Line2D
 
+from profiler.constants import WGS84_A_M, WGS84_F
 from profiler.earth import points_at, projector
 from profiler.model import BoolArray, FloatArray, GeodesicPath
 from profiler.model.arrays import frozen
@@ -17,14 +18,20 @@ from profiler.output.figures.marks import Mark
 from profiler.output.figures.scale import Scale
 from profiler.output.numbers import ratio
 from profiler.terrain import Terrain
+from profiler.terrain.near import finest_at
 from profiler.terrain.overview import ground_grid
 
 #: Ground shown beyond the ends of the path [1 of its length]; our choice.
 PAD: Final = 0.14
-#: Cells of the map along its longer side [1]; about its pixels at 150 dpi.
-CELLS: Final = 320
+#: Cells of the map along its longer side [1]; three a millimetre: finer shows nothing.
+CELLS: Final = 260
+#: and at least so many, however far apart the posts are [1].
+LEAST_CELLS: Final = 8
 #: Points along the path on the map [1].
 PATH_POINTS: Final = 65
+#: A turn and half of it [deg].
+TURN_DEG: Final = 360.0
+HALF_TURN_DEG: Final = 180.0
 #: The lamp: bearing and height above the horizon [deg]; common practice.
 LAMP_AZIMUTH_DEG: Final = 315.0
 LAMP_HEIGHT_DEG: Final = 45.0
@@ -40,12 +47,18 @@ MARKER: Final = 7.0
 #: The scale bar is at most this share of the map's width [1]; steps of its length.
 BAR_SHARE: Final = 0.45
 BAR_STEPS: Final = (5.0, 2.0, 1.0)
+#: Ticks of the scale bar and half the arrow's head [1 of the row's height].
+TICK_SHARE: Final = 0.17
+#: White in eight bits.
+WHITE: Final = 255.0
 #: Letters A and B stand so far from their mark [pt].
 LETTER_OFF: Final = 11.0
+#: White behind them.
+LETTER_BOX: Final = "round,pad=0.12"
 
 _PLANE: Final = (
     'PROJCRS["around a path",BASEGEOGCRS["WGS 84",DATUM["World Geodetic System 1984",'
-    'ELLIPSOID["WGS 84",6378137,298.257223563]]],CONVERSION["plane",'
+    'ELLIPSOID["WGS 84",{a!r},{inverse!r}]]],CONVERSION["plane",'
     'METHOD["Azimuthal Equidistant",ID["EPSG",1125]],'
     'PARAMETER["Latitude of natural origin",{lat!r},ANGLEUNIT["degree",'
     "0.0174532925199433]],"
@@ -53,7 +66,9 @@ _PLANE: Final = (
     "0.0174532925199433]],"
     'PARAMETER["False easting",0,LENGTHUNIT["metre",1]],'
     'PARAMETER["False northing",0,LENGTHUNIT["metre",1]]],CS[Cartesian,2],'
-    'AXIS["easting",east],AXIS["northing",north],LENGTHUNIT["metre",1]]'
+    'AXIS["easting",east],AXIS["northing",north],LENGTHUNIT["metre",1],'
+    # an id of its own spares a search of the whole catalogue (0.1 s, measured)
+    'ID["OVERBROW",1]]'
 )
 
 
@@ -95,9 +110,18 @@ def ground_map(terrain: Terrain, path: GeodesicPath) -> GroundMap:
     """
     lat, lon = points_at(path, np.linspace(0.0, path.length_m, PATH_POINTS))
     middle = PATH_POINTS // 2
-    plane = projector(_PLANE.format(lat=float(lat[middle]), lon=_turned(lon[middle])))
+    plane = projector(
+        _PLANE.format(
+            lat=float(lat[middle]),
+            lon=_turned(lon[middle]),
+            a=WGS84_A_M,
+            inverse=1.0 / WGS84_F,
+        )
+    )
     x, y = plane.to_crs(lat, lon)
-    east, north = _frame(x, y, path.length_m)
+    finest = finest_at(terrain, path.start)
+    post_m = 0.0 if finest is None else finest.size_m
+    east, north = _frame(x, y, path.length_m, post_m)
     grid_x, grid_y = np.meshgrid(east, north)
     grid_lat, grid_lon = plane.to_wgs84(grid_x.ravel(), grid_y.ravel())
     ground = ground_grid(
@@ -110,20 +134,24 @@ def ground_map(terrain: Terrain, path: GeodesicPath) -> GroundMap:
 
 def _turned(lon_deg: float) -> float:
     """A longitude [deg] within a half turn of Greenwich."""
-    return float((lon_deg + 180.0) % 360.0 - 180.0)
+    return float((lon_deg + HALF_TURN_DEG) % TURN_DEG - HALF_TURN_DEG)
 
 
 def _frame(
-    x: FloatArray, y: FloatArray, length_m: float
+    x: FloatArray, y: FloatArray, length_m: float, post_m: float
 ) -> tuple[FloatArray, FloatArray]:
-    """East and north of the map's cells, in the shape of its area."""
+    """East and north of the map's cells, in the shape of its area.
+
+    Cells are no finer than the posts: nearest posts would make steps of the hills.
+    """
     tall = page.MAP_AREA.height / page.MAP_AREA.width
     width = float(np.ptp(x)) + 2.0 * PAD * length_m
     height = float(np.ptp(y)) + 2.0 * PAD * length_m
     width = max(width, height / tall)
     height = width * tall
-    cell = height / CELLS
-    cols, rows = round(width / cell), CELLS
+    rows = int(min(max(height / max(post_m, height / CELLS), LEAST_CELLS), CELLS))
+    cell = height / rows
+    cols = round(width / cell)
     east = (np.arange(cols) - (cols - 1) / 2.0) * cell + (x.min() + x.max()) / 2.0
     north = ((rows - 1) / 2.0 - np.arange(rows)) * cell + (y.min() + y.max()) / 2.0
     return east, north
@@ -159,7 +187,7 @@ def hillshade(plan: GroundMap) -> tuple[FloatArray, BoolArray]:
 
 
 def draw_plan(ax: Axes, plan: GroundMap, marks: list[Mark], length_m: float) -> Axes:
-    """The path on grey hills, north up; only the decisive place carries its number.
+    """The path on grey hills, north up; dots at the numbered places.
 
     Parameters
     ----------
@@ -172,84 +200,47 @@ def draw_plan(ax: Axes, plan: GroundMap, marks: list[Mark], length_m: float) -> 
     length_m : float [m]
         Length of the path.
     """
-    grey, known = hillshade(plan)
-    half = float(plan.east_m[1] - plan.east_m[0]) / 2.0
-    edges = (
-        plan.east_m[0] - half,
-        plan.east_m[-1] + half,
-        plan.north_m[-1] - half,
-        plan.north_m[0] + half,
-    )
-    ax.set_xlim(edges[0], edges[1])
-    ax.set_ylim(edges[2], edges[3])
-    ax.axhspan(
-        edges[2],
-        edges[3],
-        facecolor=page.PAPER,
-        edgecolor=page.LEVEL,
-        hatch="xxx",
-        lw=0.0,
-        zorder=0,
-    )
-    image = np.round(np.dstack([grey, grey, grey, known]) * 255.0).astype(np.uint8)
-    ax.imshow(
-        image,
-        extent=edges,
-        origin="upper",
-        aspect="auto",
-        interpolation="nearest",
-        zorder=page.Z_LEVEL,
-    )
+    _hills(ax, plan)
     x, y = plan.path_east_m, plan.path_north_m
     ax.plot(x, y, color=page.PAPER, lw=CASING, zorder=page.Z_EDGE)
     ax.plot(x, y, color=page.SIGHT, lw=COURSE, zorder=page.Z_EDGE, label="path")
     even = np.linspace(0.0, length_m, x.size)
+    look = {"ms": DOT, "mew": page.FRAME_WIDTH, "mfc": page.DISC}
     for mark in (m for m in reversed(marks) if m.symbol.isdigit()):
         at = [float(np.interp(mark.distance_m, even, c)) for c in (x, y)]
-        ax.plot(
-            *at,
-            ls="none",
-            marker="o",
-            ms=DOT,
-            mec=page.EDGE,
-            mew=0.6,
-            mfc=page.DISC,
-            zorder=page.Z_MARK,
-        )
-    _letters(ax, x, y)
+        page.spot(ax, (at[0], at[1]), "o", label=mark.symbol, **look)
+    way = np.array([x[-1] - x[0], y[-1] - y[0]])
+    way = way * (LETTER_OFF / np.hypot(*way))
+    box = {"boxstyle": LETTER_BOX, "fc": page.PAPER, "ec": "none"}
+    for letter, shape, k, sign in (("A", "o", 0, -1.0), ("B", "s", -1, 1.0)):
+        end = (float(x[k]), float(y[k]))
+        page.spot(ax, end, shape, label=letter, ms=MARKER, mew=COURSE)
+        off = (float(sign * way[0]), float(sign * way[1]))
+        page.letter_beside(ax, letter, end, off, bbox=box)
     ax.set_xticks([])
     ax.set_yticks([])
     return ax
 
 
-def _letters(ax: Axes, x: FloatArray, y: FloatArray) -> None:
-    """Ring A and square B, their letters away from the path."""
-    way = np.array([x[-1] - x[0], y[-1] - y[0]])
-    way = way / np.hypot(*way)
-    for letter, shape, k, sign in (("A", "o", 0, -1.0), ("B", "s", -1, 1.0)):
-        ax.plot(
-            x[k],
-            y[k],
-            ls="none",
-            marker=shape,
-            ms=MARKER,
-            mfc="none",
-            mec=page.EDGE,
-            mew=COURSE,
-            zorder=page.Z_MARK,
-            label=letter,
-        )
-        ax.annotate(
-            letter,
-            (x[k], y[k]),
-            xytext=tuple(sign * LETTER_OFF * way),
-            textcoords="offset points",
-            ha="center",
-            va="center",
-            fontproperties=page.letters(page.SIZE, bold=True),
-            zorder=page.Z_MARK,
-            bbox={"boxstyle": "round,pad=0.12", "fc": page.PAPER, "ec": "none"},
-        )
+def _hills(ax: Axes, plan: GroundMap) -> None:
+    """Grey hills; where no ground is known, crossed lines."""
+    grey, known = hillshade(plan)
+    half = float(plan.east_m[1] - plan.east_m[0]) / 2.0
+    west, east = float(plan.east_m[0]) - half, float(plan.east_m[-1]) + half
+    south, north = float(plan.north_m[-1]) - half, float(plan.north_m[0]) + half
+    ax.set_xlim(west, east)
+    ax.set_ylim(south, north)
+    look: dict[str, Any] = {"facecolor": page.PAPER, "edgecolor": page.LEVEL}
+    ax.axhspan(south, north, hatch="xxx", lw=0.0, zorder=0, **look)
+    image = np.round(np.dstack([grey, grey, grey, known]) * WHITE).astype(np.uint8)
+    ax.imshow(
+        image,
+        extent=(west, east, south, north),
+        origin="upper",
+        aspect="auto",
+        interpolation="bilinear",
+        zorder=page.Z_LEVEL,
+    )
 
 
 def draw_plan_foot(figure: Figure, plan: GroundMap, scale: Scale) -> None:
@@ -261,39 +252,16 @@ def draw_plan_foot(figure: Figure, plan: GroundMap, scale: Scale) -> None:
     length = bar_length(BAR_SHARE * area.width * per_in / unit_m)
     wide = length * unit_m / per_in
     y = foot.bottom + foot.height / 2.0
-    tick = foot.height / 6.0
-    _stroke(
-        figure,
-        [
-            (foot.left, y + tick),
-            (foot.left, y - tick),
-            (foot.left + wide, y - tick),
-            (foot.left + wide, y + tick),
-        ],
-    )
-    page.write(
-        figure,
-        foot.left + wide + tick,
-        y,
-        f"{ratio(length, 6)} {scale.distance_unit}",
-        size=page.SMALL,
-        va="center",
-    )
+    tick = foot.height * TICK_SHARE
+    low, high, end = y - tick, y + tick, foot.left + wide
+    _stroke(figure, [(foot.left, high), (foot.left, low), (end, low), (end, high)])
+    text = f"{ratio(length)} {scale.distance_unit}"
+    page.write(figure, end + tick, y, text, size=page.SMALL, va="center")
     right = foot.right - tick
-    _stroke(
-        figure, [(right - tick, y + tick), (right, foot.top), (right + tick, y + tick)]
-    )
+    _stroke(figure, [(right - tick, high), (right, foot.top), (right + tick, high)])
     _stroke(figure, [(right, foot.top), (right, foot.bottom + tick)])
-    page.write(
-        figure,
-        right - 2.0 * tick,
-        y,
-        "N",
-        size=page.SMALL,
-        bold=True,
-        ha="right",
-        va="center",
-    )
+    look: dict[str, Any] = {"bold": True, "ha": "right", "va": "center"}
+    page.write(figure, right - 2.0 * tick, y, "N", size=page.SMALL, **look)
 
 
 def bar_length(most: float) -> float:
@@ -309,6 +277,6 @@ def _stroke(figure: Figure, corners: list[tuple[float, float]]) -> None:
             [x / page.PAGE_IN[0] for x in xs],
             [y / page.PAGE_IN[1] for y in ys],
             color=page.EDGE,
-            lw=1.2,
+            lw=page.RAY_WIDTH,
         )
     )

@@ -1,6 +1,6 @@
 """The profile: ground, sight line, grazing ray, both ends, voids and levels."""
 
-from typing import Final, NamedTuple
+from typing import Any, Final
 
 import numpy as np
 from matplotlib.axes import Axes
@@ -8,6 +8,7 @@ from matplotlib.axes import Axes
 from profiler.model import BoolArray, FloatArray
 from profiler.output.figures import page
 from profiler.output.figures.course import Course, Trace, void_runs
+from profiler.output.figures.ends import Limits, draw_ends, needed_heights
 from profiler.output.figures.scale import Scale, nice_ticks, tick_texts
 
 #: The drawing may grow by this share of its range to hold the sea [1]; our choice.
@@ -22,42 +23,10 @@ ROOM_FOR_WORDS: Final = 0.3
 LEAST_RANGE_M: Final = 8.0
 #: Depth of the hatching under unseen ground [1 of range].
 HATCH_SHARE: Final = 0.08
-#: Widths of lines [pt].
-THICK: Final = 2.4
-THIN: Final = 0.7
-RAY_WIDTH: Final = 1.7
+#: Width of lines of equal height [pt].
 LEVEL_WIDTH: Final = 0.5
-MARKER: Final = 8.5
-#: Dash-dot of the grazing ray and dashes of the sea [pt].
-DASH_DOT: Final = (0, (6.0, 2.0, 1.2, 2.0))
-SEA_DASHES: Final = (0, (9.0, 3.0))
 #: Most heights on the axis [1].
 MOST_TICKS: Final = 6
-#: Letters A and B stand so far from their mark [pt].
-LETTER_OFF: Final = 10.0
-#: Name of the needed-height marks, for the key.
-NEEDED_LABEL: Final = "needed height"
-
-
-class Limits(NamedTuple):
-    """Lowest and highest height on paper [m]; whether the sea is within them."""
-
-    low_m: float
-    high_m: float
-    has_sea: bool
-
-
-def needed_heights(course: Course) -> list[tuple[float, float]]:
-    """Distance and height above sea level of the needed height at each end [m]."""
-    line, found = course.line, []
-    ends = (
-        (0.0, line.from_.ground_m, line.needed.from_agl_m),
-        (line.path.length_m, line.to.ground_m, line.needed.to_agl_m),
-    )
-    for dist, ground, agl in ends:
-        if ground is not None and agl is not None:
-            found.append((dist, ground + agl))
-    return found
 
 
 def limits_of(course: Course, trace: Trace) -> Limits:
@@ -115,70 +84,60 @@ def draw_profile(
     scale : Scale
         Units.
     """
-    u, v = scale.distance_unit_m, scale.height_unit_m
+    v = scale.height_unit_m
     ax.set_xlim(*scale.x_limits())
     ax.set_ylim(limits.low_m / v, limits.high_m / v)
     _levels(ax, course, limits, scale)
     _ground(ax, trace, limits, scale)
     for start, end in void_runs(course):
         _void(ax, course, limits, scale, (start, end))
-    smooth = course.smooth_m()
-    if limits.has_sea:
-        sea = course.paper_m(smooth, np.zeros_like(smooth))
-        ax.plot(
-            smooth / u,
-            sea / v,
-            color=page.QUIET,
-            lw=THIN,
-            ls=SEA_DASHES,
-            zorder=page.Z_EDGE,
-            label="sea level",
-        )
-    ray = course.grazing_m(smooth)
-    if ray is not None:
-        ax.plot(
-            smooth / u,
-            course.paper_m(smooth, ray) / v,
-            color=page.GRAZING,
-            lw=RAY_WIDTH,
-            ls=DASH_DOT,
-            zorder=page.Z_RAY,
-            label="grazing ray",
-        )
-    reach = smooth * (course.line.aim_distance_m / course.line.path.length_m)
-    ax.plot(
-        reach / u,
-        course.paper_m(reach, course.sight_m(reach)) / v,
-        color=page.SIGHT,
-        lw=RAY_WIDTH,
-        zorder=page.Z_RAY,
-        label="sight line",
-    )
-    _ends(ax, course, limits, scale)
+    _rays(ax, course, limits, scale)
+    draw_ends(ax, course, limits, scale)
     ax.set_xticks([])
     page.style_ticks(ax)
     return ax
 
 
+def _rays(ax: Axes, course: Course, limits: Limits, scale: Scale) -> None:
+    """Sea, grazing ray and, to the aim point only, the sight line."""
+    line, smooth = course.line, course.smooth_m()
+    reach = smooth * (line.aim_distance_m / line.path.length_m)
+    lines: list[tuple[FloatArray, FloatArray, dict[str, Any]]] = []
+    if limits.has_sea:
+        look = {"color": page.QUIET, "lw": page.THIN, "ls": page.SEA_DASHES}
+        lines.append((smooth, np.zeros_like(smooth), {**look, "label": "sea level"}))
+    ray = course.grazing_m(smooth)
+    if ray is not None:
+        look = {"color": page.GRAZING, "lw": page.RAY_WIDTH, "ls": page.DASH_DOT}
+        lines.append((smooth, ray, {**look, "label": "grazing ray"}))
+    look = {"color": page.SIGHT, "lw": page.RAY_WIDTH, "label": "sight line"}
+    lines.append((reach, course.sight_m(reach), look))
+    for dist, height, looks in lines:
+        x, y = dist / scale.distance_unit_m, course.paper_m(dist, height)
+        ax.plot(x, y / scale.height_unit_m, zorder=page.Z_RAY, **looks)
+
+
 def _levels(ax: Axes, course: Course, limits: Limits, scale: Scale) -> None:
-    """Lines of equal height, labelled where they meet the left edge."""
+    """Lines of equal height, labelled at the ends, where they stand at themselves."""
     v, u = scale.height_unit_m, scale.distance_unit_m
-    left, right = (x * u for x in scale.x_limits())
-    dist = np.linspace(left, right, course.smooth_m().size)
-    shift = course.paper_at(left, 0.0)
-    ticks = nice_ticks(
-        (limits.low_m - shift) / v, (limits.high_m - shift) / v, MOST_TICKS
-    )
-    for tick in ticks:
-        paper = course.paper_m(dist, np.full_like(dist, tick * v))
+    left, right = scale.x_limits()
+    smooth = course.smooth_m()
+    bulge = course.paper_m(smooth, np.zeros_like(smooth))
+    ticks = nice_ticks(limits.low_m / v, limits.high_m / v, MOST_TICKS)
+    ax.set_yticks(ticks, tick_texts(ticks))
+    step = ticks[1] - ticks[0] if len(ticks) > 1 else 1.0
+    lowest = np.floor((limits.low_m - bulge.max()) / v / step)
+    highest = np.ceil((limits.high_m - bulge.min()) / v / step)
+    x = np.concatenate([[left], smooth / u, [right]])
+    for level in np.arange(lowest, highest + 1.0) * (step * v):
+        paper = course.paper_m(smooth, np.full_like(smooth, level)) / v
         ax.plot(
-            dist / u,
-            paper / v,
+            x,
+            np.concatenate([paper[:1], paper, paper[-1:]]),
             color=page.LEVEL,
             lw=LEVEL_WIDTH,
             zorder=page.Z_GROUND + 1,
         )
-    ax.set_yticks([t + shift / v for t in ticks], tick_texts(ticks))
 
 
 def edge_runs(seen: BoolArray, known: BoolArray, *, want: bool) -> list[slice]:
@@ -219,12 +178,12 @@ def _ground(ax: Axes, trace: Trace, limits: Limits, scale: Scale) -> None:
         zorder=page.Z_GROUND + 1,
         label="not seen",
     )
-    ax.plot(hx, hy, color=page.EDGE, lw=THIN, zorder=page.Z_EDGE)
+    ax.plot(hx, hy, color=page.EDGE, lw=page.THIN, zorder=page.Z_EDGE)
     ax.plot(
         _joined(x, lit),
         _joined(y, lit),
         color=page.EDGE,
-        lw=THICK,
+        lw=page.THICK,
         zorder=page.Z_EDGE,
         solid_capstyle="butt",
         label="ground seen",
@@ -244,78 +203,7 @@ def _void(
         facecolor=page.PAPER,
         edgecolor=page.HATCHING,
         hatch="xxxx",
-        lw=THIN,
+        lw=page.THIN,
         zorder=page.Z_GROUND,
-        label="no ground known",
+        label="no ground",
     )
-
-
-def _ends(ax: Axes, course: Course, limits: Limits, scale: Scale) -> None:
-    """Masts, the eye's ring A, the aim point's square B, and needed heights."""
-    line, u, v = course.line, scale.distance_unit_m, scale.height_unit_m
-    length = line.path.length_m
-    for dist, end in ((0.0, line.from_), (length, line.to)):
-        if end.ground_m is not None:
-            foot, top = end.ground_m, end.amsl_m
-            pair = course.paper_m(np.array([dist, dist]), np.array([foot, top])) / v
-            ax.plot(
-                [dist / u] * 2, pair, color=page.EDGE, lw=RAY_WIDTH, zorder=page.Z_EDGE
-            )
-    inside = [
-        (d / u, course.paper_at(d, z) / v)
-        for d, z in needed_heights(course)
-        if limits.low_m <= course.paper_at(d, z) <= limits.high_m
-    ]
-    if inside:
-        xs, ys = zip(*inside, strict=True)
-        ax.plot(
-            xs,
-            ys,
-            ls="none",
-            marker="_",
-            ms=2.0 * MARKER,
-            mew=RAY_WIDTH,
-            color=page.EDGE,
-            zorder=page.Z_MARK,
-            label=NEEDED_LABEL,
-        )
-    spots = (
-        ("A", "o", 0.0, line.from_.amsl_m, "right", -1.0),
-        ("B", "s", line.aim_distance_m, line.aim_m, "left", 1.0),
-    )
-    for letter, shape, dist, height, side, way in spots:
-        at = (dist / u, course.paper_at(dist, height) / v)
-        ax.plot(
-            *at,
-            ls="none",
-            marker=shape,
-            ms=MARKER,
-            mfc="none",
-            mec=page.EDGE,
-            mew=RAY_WIDTH,
-            zorder=page.Z_MARK,
-            label=letter,
-        )
-        ax.annotate(
-            letter,
-            at,
-            xytext=(way * LETTER_OFF, 0.0),
-            textcoords="offset points",
-            ha=side,
-            va="center",
-            fontproperties=page.letters(page.SIZE, bold=True),
-            zorder=page.Z_MARK,
-        )
-    if line.target.aim_moved_m > 0.0:
-        given = course.paper_at(length, line.to.amsl_m) / v
-        ax.plot(
-            length / u,
-            given,
-            ls="none",
-            marker="+",
-            ms=MARKER,
-            color=page.EDGE,
-            mew=RAY_WIDTH,
-            zorder=page.Z_MARK,
-            label="given point",
-        )

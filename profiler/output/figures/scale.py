@@ -16,6 +16,8 @@ NICE_STEPS: Final = (1, 2, 5, 10)
 END_SHARE: Final = 0.032
 #: Exaggerations of this and more are told as whole numbers [1].
 WHOLE_FROM: Final = 10.0
+#: Most decimals of a round number [1].
+TICK_DECIMALS: Final = 6
 #: Metres in a unit of distance [m].
 DISTANCE_UNIT_M: Final = {"m": 1.0, "ft": FOOT_M, "km": M_PER_KM, "mi": MILE_M}
 
@@ -73,7 +75,7 @@ def nice_ticks(low: float, high: float, most: int) -> list[float]:
 
 def tick_texts(ticks: list[float]) -> list[str]:
     """Ticks without needless zeros, thousands set apart."""
-    return [_apart(ratio(t, 6)) for t in ticks]
+    return [_apart(ratio(t, TICK_DECIMALS)) for t in ticks]
 
 
 def _apart(text: str) -> str:
@@ -86,4 +88,4 @@ def times_text(exaggeration: float) -> str:
     """An exaggeration in two figures or a whole number."""
     if exaggeration >= WHOLE_FROM:
         return f"{exaggeration:.0f}"
-    return ratio(float(f"{exaggeration:.2g}"), 6)
+    return ratio(float(f"{exaggeration:.2g}"), TICK_DECIMALS)

@@ -10,8 +10,8 @@ from matplotlib.patches import Ellipse
 
 from profiler.output.figures import page
 from profiler.output.figures.course import Course, Trace, void_runs
+from profiler.output.figures.ends import Limits
 from profiler.output.figures.marks import Mark, spread
-from profiler.output.figures.profile import Limits
 from profiler.output.figures.scale import Scale, nice_ticks, tick_texts
 
 #: The strip shows margins up to so many times the lowest one [1]; our choice.
@@ -168,7 +168,7 @@ def draw_disc(
     numbered = mark.symbol.isdigit()
     disc = Ellipse(
         (x_in / width, y_in / height),
-        size_in / width,
+        (size_in if len(mark.symbol) == 1 else max(size_in, DISC_IN)) / width,
         size_in / height,
         facecolor=page.DISC if numbered else page.PAPER,
         edgecolor=page.EDGE if numbered else page.DISC,

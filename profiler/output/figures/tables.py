@@ -12,8 +12,8 @@ from profiler.constants import VERSION
 from profiler.model import EndReport, SightLine, Verdict
 from profiler.output.figures import page
 from profiler.output.figures.course import Course
+from profiler.output.figures.ends import Limits
 from profiler.output.figures.marks import Mark
-from profiler.output.figures.profile import DASH_DOT, SEA_DASHES, THICK, THIN, Limits
 from profiler.output.figures.scale import Scale, times_text
 from profiler.output.figures.strip import draw_disc
 from profiler.output.numbers import DOWN, UP, latitude, longitude, ratio
@@ -23,7 +23,7 @@ NAME_MOST: Final = 40
 FILE_MOST: Final = 48
 HASH_SHOWN: Final = 8
 #: Length of a sample line in the key, its gap to the words, and between entries [in].
-SAMPLE_IN: Final = 0.32
+SAMPLE_IN: Final = 0.3
 KEY_GAP_IN: Final = 0.06
 KEY_APART_IN: Final = 0.24
 #: Diameter of a disc in the table [in].
@@ -38,6 +38,8 @@ LONGITUDE_END_IN: Final = 4.42
 NOTE_IN: Final = 4.54
 #: Distance between the table's lines [in].
 ROW_IN: Final = 0.1465
+#: Distance between the lines of a broken headline [1 of its size].
+HEAD_STEP: Final = 1.25
 #: Posts this far apart and more are told in whole metres [m].
 WHOLE_POSTS_M: Final = 9.5
 
@@ -57,26 +59,35 @@ def names(line: SightLine) -> tuple[str, str]:
 
 
 def draw_head(figure: Figure, headline: tuple[str, str]) -> None:
-    """The first line in two short ones."""
+    """The first line in two short ones; a long first one is broken near its middle."""
     area = page.HEAD_AREA
+    text = headline[0].strip().rstrip(":;,")
+    size = page.HEAD / page.PT_PER_IN
     first = page.write(
-        figure,
-        area.left,
-        area.top - page.HEAD / page.PT_PER_IN,
-        headline[0].strip().rstrip(":;,"),
-        size=page.HEAD,
-        bold=True,
+        figure, area.left, area.top - HEAD_STEP * size, text, size=page.HEAD, bold=True
     )
-    page.fit(figure, first, area.width, least_pt=page.HEAD_LEAST)
+    page.fit(figure, first, area.width, least_pt=page.HEAD_LEAST, cut=False)
+    if page.width_in(figure, first) > area.width:
+        first.remove()
+        for k, part in enumerate(halves(text)):
+            y = area.top - (k + 1) * page.HEAD_LEAST * HEAD_STEP / page.PT_PER_IN
+            artist = page.write(
+                figure, area.left, y, part, size=page.HEAD_LEAST, bold=True
+            )
+            page.fit(figure, artist, area.width, least_pt=page.SIZE)
     text = headline[1].strip()
-    second = page.write(
-        figure,
-        area.left,
-        area.bottom + 0.06,
-        text[:1].upper() + text[1:],
-        size=page.SUBHEAD,
-    )
+    text = text[:1].upper() + text[1:]
+    y = area.bottom + page.BASELINE_IN
+    second = page.write(figure, area.left, y, text, size=page.SUBHEAD)
     page.fit(figure, second, area.width, least_pt=page.SIZE)
+
+
+def halves(text: str) -> tuple[str, str]:
+    """A text broken at the space nearest its middle."""
+    middle = len(text) // 2
+    spaces = [k for k, c in enumerate(text) if c == " "] or [middle]
+    at = min(spaces, key=lambda k: abs(k - middle))
+    return text[:at].rstrip(), text[at:].lstrip()
 
 
 def end_text(end: EndReport, what: str, scale: Scale) -> str:
@@ -88,7 +99,7 @@ def end_text(end: EndReport, what: str, scale: Scale) -> str:
     ground = f"ground {show.height(end.ground_m)}{source}"
     if end.agl_m is None or end.agl_m == 0.0:
         return f"{ground}, {what} on it"
-    return f"{ground}, {what} {show.height(end.agl_m)} above it"
+    return f"{ground}, {what} {show.given(end.agl_m)} above it"
 
 
 def draw_ends(figure: Figure, line: SightLine, scale: Scale) -> None:
@@ -97,7 +108,7 @@ def draw_ends(figure: Figure, line: SightLine, scale: Scale) -> None:
     pairs = zip(("A", "B"), names(line), (line.from_, line.to), strict=True)
     for letter, name, end in pairs:
         left = letter == "A"
-        side = {"ha": "left" if left else "right"}
+        side = "left" if left else "right"
         x = area.left if left else area.right
         what = "eye" if left else "top"
         top = area.top - page.SIZE / page.PT_PER_IN
@@ -106,7 +117,7 @@ def draw_ends(figure: Figure, line: SightLine, scale: Scale) -> None:
             (text, top, True),
             (end_text(end, what, scale), area.bottom + 0.04, False),
         ):
-            artist = page.write(figure, x, y, text_, bold=bold, **side)
+            artist = page.write(figure, x, y, text_, bold=bold, ha=side)
             page.fit(figure, artist, half, least_pt=page.SMALL)
 
 
@@ -120,14 +131,24 @@ class Entry(NamedTuple):
 
 
 _ENTRIES: Final = (
-    Entry("sight line", {"color": page.SIGHT, "lw": 1.7}, ""),
-    Entry("grazing ray", {"color": page.GRAZING, "lw": 1.7, "ls": DASH_DOT}, ""),
-    Entry("ground seen", {"color": page.EDGE, "lw": THICK}, ""),
+    Entry("sight line", {"color": page.SIGHT, "lw": page.RAY_WIDTH}, ""),
+    Entry(
+        "grazing ray",
+        {"color": page.GRAZING, "lw": page.RAY_WIDTH, "ls": page.DASH_DOT},
+        "",
+    ),
+    Entry("ground seen", {"color": page.EDGE, "lw": page.THICK}, ""),
     Entry("not seen", None, "//////"),
-    Entry("no ground known", None, "xxxx"),
-    Entry("sea level", {"color": page.QUIET, "lw": THIN, "ls": SEA_DASHES}, ""),
-    Entry("needed height", {"color": page.EDGE, "lw": 1.7}, "_"),
-    Entry("given point", {"color": page.EDGE, "lw": 0.0, "marker": "+"}, ""),
+    Entry("no ground", None, "xxxx"),
+    Entry(
+        "sea level", {"color": page.QUIET, "lw": page.THIN, "ls": page.SEA_DASHES}, ""
+    ),
+    Entry("needed height", {"color": page.EDGE, "lw": page.RAY_WIDTH}, "_"),
+    Entry(
+        "given point",
+        {"color": page.EDGE, "lw": 0.0, "marker": "+", "mew": page.RAY_WIDTH},
+        "",
+    ),
 )
 
 
@@ -155,21 +176,50 @@ def _sample(figure: Figure, entry: Entry, x: float, y: float) -> None:
             Rectangle(
                 (x / wide, (middle - 0.05) / tall),
                 SAMPLE_IN / wide,
-                0.1 / tall,
+                TABLE_DISC_IN * MIDDLE * 2.0 / tall,
                 facecolor=page.PAPER if entry.hatch == "xxxx" else page.GROUND,
                 edgecolor=page.HATCHING,
                 hatch=entry.hatch,
-                lw=THIN,
+                lw=page.THIN,
             )
         )
         return
-    inset = SAMPLE_IN / 3.0 if entry.hatch == "_" else 0.0
-    figure.add_artist(
-        Line2D(
-            [(x + inset) / wide, (x + SAMPLE_IN - inset) / wide],
-            [middle / tall] * 2,
-            **entry.line,
-        )
+    ends = (x, x + SAMPLE_IN)
+    if entry.hatch == "_":
+        ends = (x + SAMPLE_IN / 3.0, x + 2.0 * SAMPLE_IN / 3.0)
+    if "marker" in entry.line:
+        ends = (x + SAMPLE_IN / 2.0,) * 2
+    xs = [end / wide for end in ends]
+    figure.add_artist(Line2D(xs, [middle / tall] * 2, **entry.line))
+
+
+#: The table's columns: left or right edge from the table's own [in].
+_COLUMNS: Final = (
+    (DISTANCE_END_IN, "right"),
+    (GROUND_IN, "left"),
+    (LATITUDE_END_IN, "right"),
+    (LONGITUDE_END_IN, "right"),
+    (NOTE_IN, "left"),
+)
+
+
+def _row(figure: Figure, y_in: float, texts: Sequence[str], color: str) -> None:
+    for text, (x, side) in zip(texts, _COLUMNS, strict=True):
+        if text:
+            at = page.TABLE_AREA.left + x
+            page.write(figure, at, y_in, text, size=page.SMALL, ha=side, color=color)
+
+
+def mark_texts(mark: Mark, scale: Scale) -> tuple[str, str, str, str, str]:
+    """One row of the table: distance, ground, latitude, longitude, note."""
+    show = scale.show
+    side = "above" if mark.margin_m < 0.0 else "below"
+    return (
+        show.bare_distance(mark.distance_m),
+        f"{show.height(abs(mark.margin_m))} {side} the line",
+        latitude(mark.lat_deg),
+        longitude(mark.lon_deg),
+        mark.note,
     )
 
 
@@ -177,49 +227,20 @@ def draw_table(
     figure: Figure, marks: Sequence[Mark], left_out: int, scale: Scale
 ) -> None:
     """One row for each disc: where it is, how far from the line, coordinates."""
-    area, show = page.TABLE_AREA, scale.show
+    area = page.TABLE_AREA
     y = area.top - page.SMALL / page.PT_PER_IN
-
-    def row(texts: Sequence[str], color: str) -> None:
-        places = (
-            (DISTANCE_END_IN, "right"),
-            (GROUND_IN, "left"),
-            (LATITUDE_END_IN, "right"),
-            (LONGITUDE_END_IN, "right"),
-            (NOTE_IN, "left"),
-        )
-        for text, (x, side) in zip(texts, places, strict=True):
-            if text:
-                page.write(
-                    figure,
-                    area.left + x,
-                    y,
-                    text,
-                    size=page.SMALL,
-                    ha=side,
-                    color=color,
-                )
-
-    row((scale.distance_unit, "ground stands", "latitude", "longitude", ""), page.QUIET)
+    heads = (scale.distance_unit, "ground stands", "latitude", "longitude", "")
+    _row(figure, y, heads, page.QUIET)
     for mark in marks:
         y -= ROW_IN
-        side = "above" if mark.margin_m < 0.0 else "below"
-        row(
-            (
-                show.bare_distance(mark.distance_m),
-                f"{show.height(abs(mark.margin_m))} {side} the line",
-                latitude(mark.lat_deg),
-                longitude(mark.lon_deg),
-                mark.note,
-            ),
-            page.EDGE,
-        )
+        _row(figure, y, mark_texts(mark, scale), page.EDGE)
         middle = y + page.SMALL / page.PT_PER_IN * MIDDLE
-        draw_disc(figure, area.left + 0.1, middle, mark, size_in=TABLE_DISC_IN)
+        x = area.left + TABLE_DISC_IN
+        draw_disc(figure, x, middle, mark, size_in=TABLE_DISC_IN)
     if left_out:
         y -= ROW_IN
         least = max(m.margin_m for m in marks if m.symbol.isdigit())
-        text = f"and {left_out} more, none over {show.height(-least)}"
+        text = f"and {left_out} more, none over {scale.show.height(-least)}"
         page.write(figure, area.left + GROUND_IN, y, text, size=page.SMALL)
 
 
@@ -233,7 +254,7 @@ def needed_lines(line: SightLine, scale: Scale) -> list[str]:
         ("B", needed.to_agl_m, line.to),
     ):
         if agl is not None:
-            now = "" if end.agl_m is None else f" (now {show.height(end.agl_m)})"
+            now = "" if end.agl_m is None else f" (now {show.given(end.agl_m)})"
             lines.append(f"{letter} at {show.height(agl, rounding=UP)}{now}")
     if blocked and needed.both_extra_m is not None:
         lines.append(f"both {show.height(needed.both_extra_m, rounding=UP)} higher")
@@ -245,8 +266,15 @@ def needed_lines(line: SightLine, scale: Scale) -> list[str]:
     if needed.kr is not None and needed.ke is not None:
         least = "" if blocked else "at least "
         kr, ke = (ratio(v, rounding=UP) for v in (needed.kr, needed.ke))
-        lines.append(f"air of {least}kr {kr} = ke {ke}")
+        lines.append(f"air of {least}kr {kr} = ke {ke}".replace("-", "−"))
     return lines
+
+
+_NEEDED_HEADS: Final = {
+    Verdict.BLOCKED: "each of these alone clears the line",
+    Verdict.CLEAR: "each of these alone still clears",
+    Verdict.UNDETERMINED: "each still clears the known ground",
+}
 
 
 def draw_needed(figure: Figure, line: SightLine, scale: Scale) -> None:
@@ -255,8 +283,7 @@ def draw_needed(figure: Figure, line: SightLine, scale: Scale) -> None:
     lines = needed_lines(line, scale)
     if not lines:
         lines = ["nothing short of other stations"]
-    blocked = line.verdict == Verdict.BLOCKED
-    head = "one of these clears the line" if blocked else "each of these still clears"
+    head = _NEEDED_HEADS[line.verdict]
     y = area.top - page.SMALL / page.PT_PER_IN
     page.write(figure, area.left, y, head, size=page.SMALL, color=page.QUIET)
     for text in lines:
@@ -285,6 +312,7 @@ def footer_lines(course: Course, limits: Limits, scale: Scale) -> list[str]:
     if not limits.has_sea:
         sea += " (the sea itself lies off the drawing)"
     times = times_text(scale.exaggeration(limits.low_m, limits.high_m))
+    both = both.replace("-", "−")
     return [
         f"Ground: {ground}, {profile.interpolation.value}.  Air: {both} ({how}).",
         f"Drawn: {sea}, heights drawn {times} times.  overbrow {VERSION}, terrain "
