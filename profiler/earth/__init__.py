@@ -31,13 +31,19 @@ from profiler.earth.curvature import (
 )
 from profiler.earth.geodesic import (
     GeodesicLine,
+    beside_path,
     destination,
     distances_m,
     geodesic_line,
     geodesic_path,
     points_at,
 )
-from profiler.earth.projection import Projector, crs_from_user, projector
+from profiler.earth.projection import (
+    Projector,
+    crs_from_user,
+    plane_around,
+    projector,
+)
 from profiler.earth.trade_rules import (
     TradeRule,
     conversion_table,
@@ -56,6 +62,7 @@ __all__ = [
     "TradeRule",
     "apparent_size_deg",
     "bend",
+    "beside_path",
     "conversion_table",
     "conversion_table_text",
     "crs_from_user",
@@ -88,6 +95,7 @@ __all__ = [
     "kr_from_weather",
     "meridian_radius",
     "n_gradient_from_kappa",
+    "plane_around",
     "points_at",
     "prime_vertical_radius",
     "projector",

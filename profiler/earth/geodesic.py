@@ -216,3 +216,32 @@ def _turned(azimuth_deg: float) -> float:
     turned = float(azimuth_deg) % TURN_DEG
     # a bearing of -1e-15 comes out of the remainder as 360 itself
     return 0.0 if turned == TURN_DEG else turned
+
+
+def beside_path(
+    path: GeodesicPath, dist_m: FloatArray, offset_m: FloatArray
+) -> tuple[FloatArray, FloatArray]:
+    """Places beside a path, square to it.
+
+    Parameters
+    ----------
+    path : GeodesicPath
+    dist_m : (n,) float64 [m]
+        Distance along the path from its start.
+    offset_m : (n,) float64 [m]
+        Distance from the path, positive to the right looking from its start.
+
+    Returns
+    -------
+    lat_deg, lon_deg : (n,) float64 [deg]
+        Longitudes may lie outside ±180.
+    """
+    dist = np.asarray(dist_m, dtype=np.float64)
+    lat, lon = points_at(path, dist)
+    here = np.full(dist.shape, path.start.lat_deg)
+    origin = np.full(dist.shape, path.start.lon_deg)
+    azimuth = np.full(dist.shape, path.azimuth_deg)
+    _, _, back = _WGS84.fwd(origin, here, azimuth, dist)
+    right = np.asarray(back) + HALF_TURN_DEG + QUARTER_TURN_DEG
+    there_lon, there_lat, _ = _WGS84.fwd(lon, lat, right, np.asarray(offset_m))
+    return np.asarray(there_lat), np.asarray(there_lon)

@@ -206,7 +206,25 @@ def crs_from_user(text: str) -> Projector:
         raise InputError(str(error)) from error
 
 
-def _projector_of(crs: CRS) -> Projector:
+def plane_around(lat_deg: float, lon_deg: float) -> Projector:
+    """A plane on which distances and bearings from its middle are true.
+
+    Parameters
+    ----------
+    lat_deg, lon_deg : float [deg]
+        The middle, on WGS84.
+
+    Returns
+    -------
+    Projector
+        Azimuthal equidistant, metres east and north of the middle.
+    """
+    text = f"+proj=aeqd +lat_0={lat_deg!r} +lon_0={lon_deg!r} +datum=WGS84 +units=m"
+    # looking such a CRS up in the register of codes would take longer than drawing it
+    return _projector_of(CRS.from_proj4(text), name="around a point")
+
+
+def _projector_of(crs: CRS, name: str | None = None) -> Projector:
     """Build the projector; DemError when the CRS is no map."""
     flat = _horizontal(crs)
     plain = flat.source_crs if flat.is_bound and flat.source_crs else flat
@@ -223,7 +241,7 @@ def _projector_of(crs: CRS) -> Projector:
     meridian_deg = math.degrees(meridian.longitude * in_rad)
     transformer = None if _is_wgs84(flat, meridian_deg) else _from_wgs84(flat)
     return Projector(
-        crs_name=_name(plain),
+        crs_name=name or _name(plain),
         is_geographic=plain.is_geographic,
         # WKT of one maker writes "Degree"
         unit_name=axes[0].unit_name.replace("Degree", "degree"),

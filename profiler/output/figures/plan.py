@@ -9,8 +9,7 @@ from matplotlib.axes import Axes
 from matplotlib.figure import Figure
 from matplotlib.lines import Line2D
 
-from profiler.constants import WGS84_A_M, WGS84_F
-from profiler.earth import points_at, projector
+from profiler.earth import plane_around, points_at
 from profiler.model import BoolArray, FloatArray, GeodesicPath
 from profiler.model.arrays import frozen
 from profiler.output.figures import page
@@ -56,21 +55,6 @@ LETTER_OFF: Final = 11.0
 #: White behind them.
 LETTER_BOX: Final = "round,pad=0.12"
 
-_PLANE: Final = (
-    'PROJCRS["around a path",BASEGEOGCRS["WGS 84",DATUM["World Geodetic System 1984",'
-    'ELLIPSOID["WGS 84",{a!r},{inverse!r}]]],CONVERSION["plane",'
-    'METHOD["Azimuthal Equidistant",ID["EPSG",1125]],'
-    'PARAMETER["Latitude of natural origin",{lat!r},ANGLEUNIT["degree",'
-    "0.0174532925199433]],"
-    'PARAMETER["Longitude of natural origin",{lon!r},ANGLEUNIT["degree",'
-    "0.0174532925199433]],"
-    'PARAMETER["False easting",0,LENGTHUNIT["metre",1]],'
-    'PARAMETER["False northing",0,LENGTHUNIT["metre",1]]],CS[Cartesian,2],'
-    'AXIS["easting",east],AXIS["northing",north],LENGTHUNIT["metre",1],'
-    # an id of its own spares a search of the whole catalogue (0.1 s, measured)
-    'ID["OVERBROW",1]]'
-)
-
 
 @dataclass(frozen=True, slots=True, kw_only=True, eq=False)
 class GroundMap:
@@ -110,14 +94,7 @@ def ground_map(terrain: Terrain, path: GeodesicPath) -> GroundMap:
     """
     lat, lon = points_at(path, np.linspace(0.0, path.length_m, PATH_POINTS))
     middle = PATH_POINTS // 2
-    plane = projector(
-        _PLANE.format(
-            lat=float(lat[middle]),
-            lon=_turned(lon[middle]),
-            a=WGS84_A_M,
-            inverse=1.0 / WGS84_F,
-        )
-    )
+    plane = plane_around(float(lat[middle]), _turned(lon[middle]))
     x, y = plane.to_crs(lat, lon)
     finest = finest_at(terrain, path.start)
     post_m = 0.0 if finest is None else finest.size_m

@@ -1,6 +1,5 @@
 """A figure to a file: never half of one, the same bytes for the same answer."""
 
-import os
 import threading
 from pathlib import Path
 from typing import Any, Final
@@ -10,6 +9,7 @@ from matplotlib.figure import Figure
 
 from profiler.errors import InputError
 from profiler.output.figures.page import PNG_DPI
+from profiler.output.files import write_whole
 
 #: How hard a PNG is packed: as small as level 6 and faster (measured).
 PNG_LEVEL: Final = 2
@@ -63,21 +63,7 @@ def save_figure(figure: Figure, path: str | Path, *, dpi: float = PNG_DPI) -> No
     if suffix not in _METADATA:
         msg = f'"{target.name}" is no figure file. End the name in .png, .svg or .pdf.'
         raise InputError(msg)
-    if target.is_dir():
-        msg = f'"{target}" is a folder. Give the figure a file name in it.'
-        raise InputError(msg)
-    if not target.parent.is_dir():
-        msg = f'Folder "{target.parent}" does not exist. Make it first.'
-        raise InputError(msg)
-    beside = target.with_name(f".{target.name}.{os.getpid()}-{threading.get_ident()}")
-    try:
-        _write(figure, beside, suffix, dpi)
-        beside.replace(target)
-    except OSError as error:
-        msg = f'"{target}" cannot be written ({error.strerror or error}).'
-        raise InputError(msg) from error
-    finally:
-        beside.unlink(missing_ok=True)
+    write_whole(target, lambda beside: _write(figure, beside, suffix, dpi))
 
 
 def _write(figure: Figure, path: Path, suffix: str, dpi: float) -> None:
