@@ -7,9 +7,10 @@ from typing import Final
 
 import click
 
-from profiler.cli.profile import profile_command
+from profiler.cli.profile import answer_to, profile_command, tell, words_for
 from profiler.cli.sections import SectionCommand
 from profiler.errors import InputError
+from profiler.output.files import write_text
 
 #: Where the sample may lie: beside the package in a checkout, or where it installs.
 SAMPLE_FOLDERS: Final = (
@@ -48,8 +49,6 @@ def demo_command(ctx: click.Context, folder: str) -> None:
 
     FOLDER is made if need be; by default overbrow-demo.
     """
-    from profiler.output.files import write_text
-
     sample = sample_folder()
     out = Path(folder)
     try:
@@ -65,28 +64,10 @@ def demo_command(ctx: click.Context, folder: str) -> None:
         *("--geojson", str(out / "profile.geojson")),
     ]
     click.echo(f"$ {shlex.join(['overbrow', 'profile', *args])}\n")
-    answer_words = _run(ctx, args)
-    write_text(out / "words.txt", answer_words)
+    with profile_command.make_context("profile", args, parent=ctx) as inner:
+        answer = answer_to(inner.params)
+        tell(answer, inner.params)
+        write_text(out / "words.txt", words_for(answer, inner.params))
     click.echo(f"\nIn {out}:")
     for name, what in LEAVES.items():
         click.echo(f"  {name:<16} {what}")
-
-
-def _run(ctx: click.Context, args: list[str]) -> str:
-    """Run the profile command and give back the words it printed."""
-    from profiler.cli.profile import tell
-    from profiler.cli.question import Places, air_from, terrain_from
-    from profiler.output.answer import look
-    from profiler.output.words import words
-
-    with profile_command.make_context("profile", list(args), parent=ctx) as inner:
-        options = inner.params
-        terrain, places = terrain_from(options), Places(options)
-        answer = look(
-            terrain,
-            places.station("from", terrain),
-            places.station("to", terrain),
-            air=air_from(options),
-        )
-        tell(answer, options)
-    return words(answer)

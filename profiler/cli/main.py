@@ -1,13 +1,14 @@
 """The command ``overbrow``: its first screen and its sub-commands."""
 
-import os
+import io
 import sys
 from importlib import import_module
-from typing import Final
+from typing import Any, Final
 
 import click
 
-from profiler.cli.sections import EXIT_NO_READER
+from profiler.cli.characters import echo
+from profiler.cli.endings import EXIT_NO_READER, plain_endings, silence
 from profiler.constants import VERSION
 
 #: Sub-commands: module and name of the command in it, imported when called.
@@ -46,13 +47,37 @@ class LazyGroup(click.Group):
         return list(COMMANDS)
 
     def get_command(self, ctx: click.Context, cmd_name: str) -> click.Command | None:
-        """The command, or None so that click names the nearest."""
+        """The command, or None if there is none of that name."""
         del ctx
         if cmd_name not in COMMANDS:
             return None
         module, name = COMMANDS[cmd_name]
         command: click.Command = getattr(import_module(module), name)
         return command
+
+    def resolve_command(
+        self, ctx: click.Context, args: list[str]
+    ) -> tuple[str | None, click.Command | None, list[str]]:
+        """The command that is meant; an unknown one is refused with the nearest."""
+        name = args[0]
+        if name not in COMMANDS and not name.startswith("-"):
+            import difflib
+
+            near = difflib.get_close_matches(name, COMMANDS, n=1)
+            hint = f"Nearest: {near[0]}." if near else f"Known: {', '.join(COMMANDS)}."
+            msg = f"No command {echo(name)}. {hint}"
+            raise click.UsageError(msg, ctx)
+        return super().resolve_command(ctx, args)
+
+    def make_context(self, *args: Any, **kwargs: Any) -> click.Context:
+        """Read the first words; an early end is plain."""
+        with plain_endings():
+            return super().make_context(*args, **kwargs)
+
+    def invoke(self, ctx: click.Context) -> Any:
+        """Run the sub-command; an early end is plain."""
+        with plain_endings():
+            return super().invoke(ctx)
 
 
 @click.group(cls=LazyGroup, invoke_without_command=True)
@@ -69,9 +94,13 @@ def overbrow(ctx: click.Context) -> None:
 
 def run() -> None:
     """Run the command line; the entry point of the installed script."""
+    for stream in (sys.stdout, sys.stderr):
+        if isinstance(stream, io.TextIOWrapper):
+            # a terminal that lacks ° or ′ shows ? there instead of failing
+            stream.reconfigure(errors="replace")
     try:
         overbrow.main(prog_name="overbrow", windows_expand_args=False)
     except BrokenPipeError:
-        # the reader closed the pipe: nothing more can be said, and nothing is wrong
-        os.dup2(os.open(os.devnull, os.O_WRONLY), sys.stdout.fileno())
+        # the reader went away while the last words were being said
+        silence()
         sys.exit(EXIT_NO_READER)

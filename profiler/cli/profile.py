@@ -6,13 +6,17 @@ from typing import Any, Final
 
 import click
 
+from profiler.cli.outside import check_ends
 from profiler.cli.question import (
     Options,
     Places,
     air_from,
+    assumed_heights,
     box_text,
     check_heights,
-    targets_of,
+    check_targets,
+    own_hill_from,
+    spare_elevation_files,
     terrain_from,
 )
 from profiler.cli.sections import SectionCommand, SectionOption
@@ -276,9 +280,25 @@ result_options = _stacked(
 @click.pass_context
 def profile_command(ctx: click.Context, /, **options: Any) -> None:
     """Say whether one point sees another, by how much and what decides it."""
+    answer = answer_to(options)
+    tell(answer, options)
+    if options["exit_code"]:
+        ctx.exit(EXIT_BY_VERDICT[answer.verdict])
+
+
+def answer_to(options: Options) -> Answer:
+    """The answer to the question that the options ask.
+
+    Raises
+    ------
+    click.UsageError
+        If options contradict each other or no elevation file is named.
+    ProfilerError
+        If an input or an elevation file cannot be used.
+    """
     check_heights(options)
-    air = air_from(options)
-    targets_of(options)
+    air, own_hill = air_from(options), own_hill_from(options)
+    check_targets(options)
     check_figure_name(options["figure"])
     places = Places(options)
     if not options["dem"]:
@@ -288,18 +308,18 @@ def profile_command(ctx: click.Context, /, **options: Any) -> None:
         )
         raise click.UsageError(msg)
     terrain = terrain_from(options)
-    answer = look(
+    spare_elevation_files(options, terrain)
+    eye, target = (places.station(role, terrain) for role in ("from", "to"))
+    check_ends(terrain, eye, target, in_degrees=options["crs"] is None)
+    return look(
         terrain,
-        places.station("from", terrain),
-        places.station("to", terrain),
+        eye,
+        target,
         air=air,
-        own_hill_m=options["own_hill"],
+        own_hill_m=own_hill,
         ignore_near_m=options["ignore_near"],
         void_below_m=options["void_below"],
     )
-    tell(answer, options)
-    if options["exit_code"]:
-        ctx.exit(EXIT_BY_VERDICT[answer.verdict])
 
 
 def check_figure_name(name: str | None) -> None:
@@ -315,14 +335,21 @@ def check_figure_name(name: str | None) -> None:
         raise InputError(msg)
 
 
+def words_for(answer: Answer, options: Options) -> str:
+    """The answer in plain words, in the unit asked for."""
+    assumed = assumed_heights(options)
+    return words(answer, show_in=options["show_in"], assumed=assumed)
+
+
 def tell(answer: Answer, options: Options) -> None:
     """Print the answer, write what was asked for, and name it on stderr."""
     for note in answer.warnings:
         click.echo(f"Warning: {note.text}", err=True)
     if options["json_file"] == "-":
-        click.echo(record_text(answer), nl=False)
+        # bytes: the same as in a file, whatever the terminal's encoding
+        click.echo(record_text(answer).encode(), nl=False)
     else:
-        click.echo(words(answer, show_in=options["show_in"]), nl=False)
+        click.echo(words_for(answer, options), nl=False)
     if options["json_file"] not in (None, "-"):
         _wrote(options["json_file"], lambda p: write_text(p, record_text(answer)))
     if options["geojson"] is not None:

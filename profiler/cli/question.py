@@ -1,5 +1,6 @@
 """From the options of a question to its terrain, stations and air."""
 
+import os
 from collections.abc import Mapping, Sequence
 from pathlib import Path
 from typing import Any
@@ -11,10 +12,17 @@ from profiler.cli.quantities import ke_looks_like_kr
 from profiler.constants import EYE_M, SURVEY_GAP_M
 from profiler.errors import InputError
 from profiler.model import Air, Point, Station
+from profiler.output.files import check_target
+from profiler.output.numbers import box
 from profiler.terrain import Terrain, open_terrain
 
 #: Room added around a question when the ground it needs is named [deg]; our choice.
 BOX_ROOM_DEG = 0.01
+#: The largest own hill of a summit that is taken [m]; our choice: beyond it the word
+#: has no meaning, and every post of the circle is read.
+MOST_OWN_HILL_M = 2000.0
+#: Decimals of that box [1]; half of the last is below the room.
+BOX_DECIMALS = 2
 
 Options = Mapping[str, Any]
 
@@ -36,7 +44,10 @@ def air_from(options: Options) -> Air:
         raise click.UsageError(msg)
     ke = options["ke"]
     if ke is not None and ke_looks_like_kr(ke):
-        text = f"--ke {ke:g} bends rays down hard; for a refraction coefficient: --kr."
+        text = (
+            f"--ke {ke:g} is an earth bent {1 / ke:.1f} times as hard as it is; for a "
+            f"coefficient of refraction write --kr {ke:g}."
+        )
         click.echo(f"Warning: {text}", err=True)
     kr = 0.0 if options["no_refraction"] else options["kr"]
     return Air(ke=ke, kr=kr, n_gradient_per_km=options["n_gradient"])
@@ -171,6 +182,24 @@ def check_heights(options: Options) -> None:
             raise InputError(msg)
 
 
+def own_hill_from(options: Options) -> float | None:
+    """Radius of a summit's own hill as stated [m]; None when it is not.
+
+    Raises
+    ------
+    InputError
+        If it is no hill but a mountain range.
+    """
+    own_hill: float | None = options["own_hill"]
+    if own_hill is not None and own_hill > MOST_OWN_HILL_M:
+        msg = (
+            f"--own-hill {own_hill:g} m is more than a summit's own hill. Use "
+            f"{MOST_OWN_HILL_M:g} m or less."
+        )
+        raise InputError(msg)
+    return own_hill
+
+
 def box_text(places: Places) -> str:
     """The box of ground that a question needs, in words."""
     points = [places.station(role, None).point for role in ("from", "to")]
@@ -178,27 +207,62 @@ def box_text(places: Places) -> str:
     lons = [p.lon_deg for p in points]
     if max(lons) - min(lons) > 180.0:
         lons = [lon % 360.0 for lon in lons]
-    return (
-        f"{min(lats) - BOX_ROOM_DEG:.2f} to {max(lats) + BOX_ROOM_DEG:.2f} N, "
-        f"{min(lons) - BOX_ROOM_DEG:.2f} to {max(lons) + BOX_ROOM_DEG:.2f} E"
+    return box(
+        min(lats) - BOX_ROOM_DEG,
+        min(lons) - BOX_ROOM_DEG,
+        max(lats) + BOX_ROOM_DEG,
+        max(lons) + BOX_ROOM_DEG,
+        decimals=BOX_DECIMALS,
     )
 
 
-def targets_of(options: Options) -> list[Path]:
-    """Files that will be written, checked before any work is done.
+def assumed_heights(options: Options) -> tuple[str, ...]:
+    """The ends, "from" and "to", whose height nobody stated."""
+    return tuple(
+        role
+        for role in ("from", "to")
+        if options[f"{role}_height"] is None and options[f"{role}_amsl"] is None
+    )
+
+
+def check_targets(options: Options) -> None:
+    """Refuse files that cannot be written, before any work is done.
 
     Raises
     ------
     InputError
-        If one cannot be written or two are the same.
+        If one cannot be written, two are the same, or one is the file of sites.
     """
-    from profiler.output.files import check_target
-
-    names = [options[k] for k in ("json_file", "figure", "geojson")]
-    paths = [Path(n) for n in names if n is not None and str(n) != "-"]
-    for path in paths:
+    files = _targets(options)
+    for path in files:
         check_target(path)
-    if len({p.resolve() for p in paths}) < len(paths):
+    if len({os.path.realpath(p) for p in files}) < len(files):
         msg = "Two results go to one file. Give each its own name."
         raise InputError(msg)
-    return paths
+    if options["sites"] is not None:
+        _refuse_overwriting(files, [Path(options["sites"])])
+
+
+def spare_elevation_files(options: Options, terrain: Terrain) -> None:
+    """Refuse to write a result over an elevation file in use.
+
+    Raises
+    ------
+    InputError
+        If a result has the name of one.
+    """
+    _refuse_overwriting(_targets(options), [r.path for r in terrain.rasters])
+
+
+def _targets(options: Options) -> list[Path]:
+    names = [options[k] for k in ("json_file", "figure", "geojson")]
+    return [Path(n) for n in names if n is not None and n != "-"]
+
+
+def _refuse_overwriting(targets: Sequence[Path], inputs: Sequence[Path]) -> None:
+    read = {os.path.realpath(p) for p in inputs}
+    for path in targets:
+        if os.path.realpath(path) in read:
+            msg = f'"{path}" is read by this question and would be overwritten. '
+            msg += "Choose another name."
+            raise InputError(msg)

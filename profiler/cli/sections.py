@@ -5,12 +5,8 @@ from typing import Any
 
 import click
 
-from profiler.errors import ProfilerError
-
-#: Exit status of bad input or a bad elevation file; the contract of docs/commands.md.
-EXIT_BAD_INPUT = 3
-#: Exit status when the reader of the output went away; as a shell reports SIGPIPE.
-EXIT_NO_READER = 141
+#: What a shell that cut a pair at its blank calls for.
+QUOTES = 'Put the pair in quotes: --from "57.1,-4.2".'
 
 
 class SectionOption(click.Option):
@@ -54,7 +50,8 @@ class SectionCommand(click.Command):
 
     def parse_args(self, ctx: click.Context, args: list[str]) -> list[str]:
         """Parse, and say what to do where click only says what is wrong."""
-        for arg in args:
+        given = list(args)  # click empties the list as it reads
+        for arg in given:
             if re.fullmatch(r"--?k(=.*)?", arg):
                 from profiler.cli.quantities import bare_k_message
 
@@ -63,29 +60,39 @@ class SectionCommand(click.Command):
             return super().parse_args(ctx, args)
         except click.NoSuchOption as error:
             if re.match(r"-[\d.]", error.option_name):
-                msg = 'Put the pair in quotes: --from "57.1,-4.2".'
-                raise click.UsageError(msg, ctx) from error
+                raise click.UsageError(QUOTES, ctx) from error
             raise
         except click.UsageError as error:
             if "unexpected extra argument" in error.message:
-                raise click.UsageError(_extra_arguments(args, error), ctx) from error
+                raise click.UsageError(_extra_arguments(given, error), ctx) from error
             raise
 
-    def invoke(self, ctx: click.Context) -> Any:
-        """Run; an error of ours becomes one sentence and exit status 3."""
-        try:
-            return super().invoke(ctx)
-        except ProfilerError as error:
-            click.echo(f"Error: {error}", err=True)
-            ctx.exit(EXIT_BAD_INPUT)
 
-
-def _extra_arguments(args: list[str], error: click.UsageError) -> str:
+def _extra_arguments(given: list[str], error: click.UsageError) -> str:
     """What words that belong to no option probably were."""
-    extra = re.findall(r"[^\s()]+", error.message.split("(", 1)[-1])
-    if any(re.fullmatch(r"[-+]?[\d.,]+[NSEW]?,?", word) for word in extra):
-        return 'Put the pair in quotes: --from "57.1,-4.2".'
-    if "--dem" in args and extra:
-        folder = extra[0].rpartition("/")[0] or "tiles"
+    extra = error.message.partition("(")[2].rstrip(")").split()
+    if not extra:
+        return "An empty word stands among the options. Leave it out, or quote a name."
+    if any(re.fullmatch(r"[-+]?[\d.,°'\"]+[NSEWnsew]?,?", word) for word in extra):
+        return QUOTES
+    option, words = _option_before(extra[0], given)
+    if option == "--dem":
+        folder = extra[0].rpartition("/")[0] or "."
         return f"--dem takes one name each time; give the folder: --dem {folder}."
-    return error.message
+    if words:
+        return f'Put the words in quotes: {option} "{" ".join(words)}".'
+    return f"{error.message}: it belongs to no option."
+
+
+def _option_before(word: str, given: list[str]) -> tuple[str, list[str]]:
+    """The last option before a word, and all words that follow that option."""
+    for at in range(given.index(word) if word in given else 0, -1, -1):
+        option, equals, value = given[at].partition("=")
+        if option.startswith("--"):
+            words = [value] if equals else []
+            for follower in given[at + 1 :]:
+                if follower.startswith("--"):
+                    break
+                words.append(follower)
+            return option, words
+    return "", []

@@ -1,6 +1,7 @@
 """Frozen value objects that pass between the rooms; data only, checked once."""
 
 from profiler.model.arrays import BoolArray, FloatArray, IntArray
+from profiler.model.cover import CoverKind, CoverSpan, PathCover
 from profiler.model.note import Note
 from profiler.model.question import Air, Point, Station
 from profiler.model.result import (
@@ -28,6 +29,8 @@ __all__ = [
     "Air",
     "Bending",
     "BoolArray",
+    "CoverKind",
+    "CoverSpan",
     "DemKind",
     "EndReport",
     "FloatArray",
@@ -37,6 +40,7 @@ __all__ = [
     "Needed",
     "Note",
     "OtherGround",
+    "PathCover",
     "PathProfile",
     "Place",
     "Point",

@@ -4,6 +4,7 @@ from dataclasses import dataclass
 from enum import StrEnum
 
 from profiler.model.arrays import BoolArray, FloatArray
+from profiler.model.cover import CoverKind
 from profiler.model.note import Note
 from profiler.model.terrain import GeodesicPath, PathProfile
 
@@ -42,11 +43,15 @@ class Place:
     """Sight line minus ground and cover [m], positive = clear."""
     elevation_deg: float
     """Elevation angle of the ground and cover here, seen from the eye [deg]."""
+    cover_name: str = ""
+    """What the cover here is called; empty where there is none."""
+    cover_kind: CoverKind | None = None
+    """Whether it is trees or a building; None where there is none."""
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
 class Stretch:
-    """A run of ground above the sight line."""
+    """A run of ground, with its cover, above the sight line."""
 
     start_m: float
     """From the eye's end [m]."""
@@ -57,6 +62,10 @@ class Stretch:
     """Where that is [m]."""
     lat_deg: float
     lon_deg: float
+    cover_name: str = ""
+    """What the cover at its worst place is called; empty for bare ground."""
+    cover_kind: CoverKind | None = None
+    """Whether that is trees or a building; None for bare ground."""
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
@@ -196,7 +205,7 @@ class SightLine:
     sight_m: FloatArray
     """(n,) height of the sight line at the profile's samples [m]."""
     margin_along_m: FloatArray
-    """(n,) sight line minus ground [m]; NaN where there is no ground."""
+    """(n,) sight line minus ground and cover [m]; NaN where there is no ground."""
     ground_seen: BoolArray
     """(n,) whether the ground at the sample is seen from the eye."""
     aim_distance_m: float

@@ -1,9 +1,12 @@
 """The path, the ground along it and the files the ground came from."""
 
-from dataclasses import dataclass
+from dataclasses import dataclass, field
 from enum import StrEnum
 
+import numpy as np
+
 from profiler.model.arrays import FloatArray, IntArray, frozen, frozen_int
+from profiler.model.cover import CoverSpan
 from profiler.model.note import Note
 from profiler.model.question import Point
 
@@ -98,10 +101,28 @@ class PathProfile:
     """Length of path that got that height [m]."""
     notes: tuple[Note, ...]
     """What looked wrong with the posts that were read."""
+    cover_m: FloatArray = field(default_factory=lambda: np.zeros(0))
+    """(n,) trees or buildings above ``ground_m``, one height on each piece [m]."""
+    cover_index: IntArray = field(default_factory=lambda: np.zeros(0, dtype=np.int64))
+    """(n,) index into ``cover_spans`` of what gives ``cover_m``; −1 for none."""
+    cover_spans: tuple[CoverSpan, ...] = ()
+    """Trees and buildings along the path, by where they start."""
 
     def __post_init__(self) -> None:
-        """Freeze the arrays."""
+        """Freeze the arrays; a profile made without cover has none anywhere."""
+        if self.cover_m.size == 0:
+            none = np.full(self.dist_m.size, -1, dtype=np.int64)
+            object.__setattr__(self, "cover_m", np.zeros(self.dist_m.size))
+            object.__setattr__(self, "cover_index", none)
+        object.__setattr__(self, "cover_m", frozen(self.cover_m))
+        object.__setattr__(self, "cover_index", frozen_int(self.cover_index))
         object.__setattr__(self, "dist_m", frozen(self.dist_m))
         object.__setattr__(self, "ground_m", frozen(self.ground_m))
         object.__setattr__(self, "piece_start", frozen_int(self.piece_start))
         object.__setattr__(self, "source", frozen_int(self.source))
+
+    @property
+    def top_m(self) -> FloatArray:
+        """(n,) ground and cover together [m]; NaN where there is no ground."""
+        top: FloatArray = self.ground_m + self.cover_m
+        return top

@@ -1,7 +1,6 @@
 """An answer that tells itself: the sight line with its record, words and figure."""
 
 from dataclasses import dataclass, fields
-from html import escape
 from pathlib import Path
 from typing import TYPE_CHECKING, Any
 
@@ -76,6 +75,8 @@ class Answer(SightLine):
 
     def _repr_html_(self) -> str:
         """The same table for a notebook."""
+        from html import escape  # 2 ms that only a notebook needs
+
         cells = "".join(
             f"<tr><th style='text-align:left'>{escape(name)}</th>"
             f"<td style='text-align:left'>{escape(value)}</td></tr>"
@@ -84,14 +85,13 @@ class Answer(SightLine):
         return f"<table>{cells}</table>"
 
     def _rows(self) -> list[tuple[str, str]]:
-        first, second = headline(self)
         values = record(self)
         decisive = values["decisive"] or {}
         return [
-            ("answer", f"{first}{second}"),
+            ("answer", "".join(headline(self))),
             ("verdict", values["verdict"]),
             ("margin_m", str(values["margin_m"])),
-            ("decisive at", f"{decisive.get('distance_m')} m"),
+            ("decisive_m", str(decisive.get("distance_m"))),
             ("shown", f"{values['target']['shown']}, {self.target.visible_m:.1f} m"),
             ("needed", _needed_text(values["needed"])),
             ("distance_m", str(values["path"]["distance_m"])),
@@ -101,7 +101,12 @@ class Answer(SightLine):
 
 
 def _needed_text(needed: dict[str, Any]) -> str:
-    return f"from {needed['from_agl_m']} m, or to {needed['to_agl_m']} m above ground"
+    parts = [
+        f"{end} {needed[f'{end}_agl_m']} m above ground"
+        for end in ("from", "to")
+        if needed[f"{end}_agl_m"] is not None
+    ]
+    return ", or ".join(parts) or "no height alone"
 
 
 def look(

@@ -1,33 +1,57 @@
 """Files that are whole or not there: written beside, then renamed."""
 
+import contextlib
 import os
 import tempfile
-from collections.abc import Callable
+from collections.abc import Callable, Iterator
 from pathlib import Path
+from typing import Final
 
 from profiler.errors import InputError
+
+#: How much of a file's name its temporary twin repeats [characters]; our choice.
+STEM_CHARACTERS: Final = 40
+#: Rights of a new file before the user's mask: all may read and write [mode bits].
+OPEN_TO_ALL: Final = 0o666
 
 
 def check_target(path: Path) -> None:
     """Refuse, before any work, a file that cannot be written.
 
+    Parameters
+    ----------
+    path : Path
+        The file wanted; an existing one may be replaced.
+
     Raises
     ------
     InputError
-        If the name is a folder, its folder is missing or is not writable.
+        If the name is a folder or a device, its folder is missing or nothing can be
+        written there.
     """
-    if path.is_dir():
-        msg = f'"{path}" is a folder; give the name of a file in it.'
-        raise InputError(msg)
-    folder = path.parent
-    if not folder.is_dir():
-        msg = f'Folder "{folder}" for "{path.name}" does not exist. Make it first.'
-        raise InputError(msg)
-    if not os.access(folder, os.W_OK):
-        msg = (
-            f'Folder "{folder}" cannot be written to. Choose another for "{path.name}".'
-        )
-        raise InputError(msg)
+    with _plainly(path):
+        if path.is_dir():
+            msg = f'"{path}" is a folder; give the name of a file in it.'
+            raise InputError(msg)
+        if path.exists() and not path.is_file():
+            msg = f'"{path}" is a device, not a file; give the name of a file.'
+            raise InputError(msg)
+        if not path.parent.is_dir():
+            msg = f'Folder "{path.parent}" for "{path.name}" does not exist. '
+            msg += "Make it first."
+            raise InputError(msg)
+    with _beside(path):
+        pass
+
+
+@contextlib.contextmanager
+def _plainly(path: Path) -> Iterator[None]:
+    """Say in one sentence what the disk refuses."""
+    try:
+        yield
+    except OSError as error:
+        msg = f'"{path}" cannot be written ({error.strerror or error}).'
+        raise InputError(msg) from error
 
 
 def write_whole(path: Path, write: Callable[[Path], None]) -> None:
@@ -36,7 +60,7 @@ def write_whole(path: Path, write: Callable[[Path], None]) -> None:
     Parameters
     ----------
     path : Path
-        The file wanted.
+        The file wanted; a link stays and the file it points to is replaced.
     write : callable
         Takes the name of a temporary file with the same ending and fills it.
 
@@ -46,21 +70,28 @@ def write_whole(path: Path, write: Callable[[Path], None]) -> None:
         If the file cannot be written; nothing is left behind.
     """
     check_target(path)
-    try:
+    with _beside(path) as beside:
+        write(beside)
+        beside.chmod(OPEN_TO_ALL & ~_umask())
+        beside.replace(os.path.realpath(path))
+
+
+@contextlib.contextmanager
+def _beside(path: Path) -> Iterator[Path]:
+    """A new empty file in the same folder with the same ending; gone afterwards."""
+    real = Path(os.path.realpath(path))
+    with _plainly(path):
         handle, name = tempfile.mkstemp(
-            prefix=f".{path.stem}-", suffix=path.suffix, dir=path.parent
+            prefix=f".{real.stem[:STEM_CHARACTERS]}-",
+            suffix=real.suffix,
+            dir=real.parent,
         )
         os.close(handle)
         beside = Path(name)
         try:
-            write(beside)
-            beside.chmod(0o666 & ~_umask())
-            beside.replace(path)
+            yield beside
         finally:
             beside.unlink(missing_ok=True)
-    except OSError as error:
-        msg = f'"{path}" cannot be written ({error.strerror or error}).'
-        raise InputError(msg) from error
 
 
 def write_text(path: Path, text: str) -> None:

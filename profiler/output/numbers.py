@@ -13,6 +13,17 @@ SHORT_PATH_M: Final = 2000.0
 TWO_DECIMALS_BELOW: Final = 0.95
 THREE_DECIMALS_BELOW: Final = 0.0095
 
+#: Decimals of a latitude or longitude in the words [1]; about a metre.
+DEG_DECIMALS: Final = 5
+
+#: A half and a whole turn of longitude [deg].
+HALF_TURN_DEG: Final = 180.0
+TURN_DEG: Final = 360.0
+
+#: Below these an angle would be told as 0.0′ [′] and a share as 0% [1].
+HALF_TENTH: Final = 0.05
+HALF_PERCENT: Final = 0.005
+
 #: Ways of rounding.
 NEAREST: Final = "nearest"
 UP: Final = "up"
@@ -55,6 +66,16 @@ class Show:
     def height(self, value_m: float, *, rounding: str = NEAREST) -> str:
         """A height with its unit."""
         return f"{self.bare_height(value_m, rounding=rounding)} {self.unit}"
+
+    def given(self, value_m: float) -> str:
+        """A height that a person gave, without a decimal it does not need."""
+        return f"{self.bare_height(value_m).removesuffix('.0')} {self.unit}"
+
+    def run(self, value_m: float) -> str:
+        """A length of part of the path: short ones in metres or feet."""
+        if value_m < (M_PER_KM if self.unit == "m" else MILE_M):
+            return f"{value_m / self._height_unit_m:.0f} {self.unit}"
+        return self.distance(value_m)
 
     @property
     def distance_unit(self) -> str:
@@ -100,19 +121,54 @@ def rounded_text(value: float, decimals: int, *, rounding: str = NEAREST) -> str
     return f"{round(steps / scale, decimals) + 0.0:.{decimals}f}"
 
 
-def latitude(value_deg: float) -> str:
-    """A latitude with five decimals (about a metre) and its letter."""
-    return f"{abs(value_deg):.5f} {'N' if value_deg >= 0.0 else 'S'}"
+def latitude(value_deg: float, decimals: int = DEG_DECIMALS) -> str:
+    """A latitude with its letter; five decimals are about a metre."""
+    text = f"{abs(value_deg):.{decimals}f}"
+    return f"{text} {'N' if value_deg >= 0.0 else 'S'}"
 
 
-def longitude(value_deg: float) -> str:
-    """A longitude with five decimals and its letter."""
-    return f"{abs(value_deg):.5f} {'E' if value_deg >= 0.0 else 'W'}"
+def longitude(value_deg: float, decimals: int = DEG_DECIMALS) -> str:
+    """A longitude with its letter."""
+    text = f"{abs(value_deg):.{decimals}f}"
+    return f"{text} {'E' if value_deg >= 0.0 else 'W'}"
+
+
+def box(south: float, west: float, north: float, east: float, *, decimals: int) -> str:
+    """A box of latitude and longitude [deg]; east may run past 180."""
+    west, east = (
+        lon
+        if abs(lon) <= HALF_TURN_DEG
+        else (lon + HALF_TURN_DEG) % TURN_DEG - HALF_TURN_DEG
+        for lon in (west, east)
+    )
+    lats = _span(latitude(south, decimals), latitude(north, decimals))
+    return f"{lats}, {_span(longitude(west, decimals), longitude(east, decimals))}"
+
+
+def _span(first: str, last: str) -> str:
+    same_letter = first[-1] == last[-1]
+    return f"{first[:-2] if same_letter else first} to {last}"
 
 
 def place(lat_deg: float, lon_deg: float) -> str:
     """A place in latitude and longitude."""
     return f"{latitude(lat_deg)} {longitude(lon_deg)}"
+
+
+def arcmin(value: float) -> str:
+    """A small angle in minutes of arc."""
+    if value < HALF_TENTH:
+        return "under 0.1′"
+    return f"{value:.1f}′"
+
+
+def percent(share: float) -> str:
+    """A share in whole per cent; neither 0 nor 100 unless it is exactly that."""
+    if 0.0 < share < HALF_PERCENT:
+        return "under 1%"
+    if 1.0 - HALF_PERCENT < share < 1.0:
+        return "over 99%"
+    return f"{share:.0%}"
 
 
 def count(value: int) -> str:

@@ -111,8 +111,10 @@ def _ratio(value: float | None) -> float | None:
 
 
 def _place(place: Place | None) -> Json | None:
-    if place is None:
-        return None
+    return None if place is None else _place_fields(place)
+
+
+def _place_fields(place: Place) -> Json:
     return {
         "distance_m": _m(place.distance_m),
         "lat_deg": _deg(place.lat_deg),
@@ -125,10 +127,9 @@ def _place(place: Place | None) -> Json | None:
 
 
 def _horizon(place: Place | None) -> Json | None:
-    fields = _place(place)
-    if fields is None or place is None:
+    if place is None:
         return None
-    return {**fields, "elevation_deg": _deg(place.elevation_deg)}
+    return {**_place_fields(place), "elevation_deg": _deg(place.elevation_deg)}
 
 
 def _stretch(stretch: Stretch) -> Json:
@@ -191,7 +192,7 @@ def _terrain(line: SightLine) -> Json:
     return {
         "files": [
             {
-                "name": f.name,
+                "name": _text(f.name),
                 "bytes": f.bytes,
                 "sha256": f.sha256,
                 "crs": f.crs,
@@ -208,7 +209,7 @@ def _terrain(line: SightLine) -> Json:
 
 def _end(end: EndReport) -> Json:
     return {
-        "name": end.name,
+        "name": _text(end.name),
         "lat_deg": _deg(end.lat_deg),
         "lon_deg": _deg(end.lon_deg),
         "ground_m": _m(end.ground_m),
@@ -247,4 +248,9 @@ def _void(void: VoidStretch | None) -> Json | None:
 
 
 def _note(note: Note) -> Json:
-    return {"code": note.code, "text": note.text}
+    return {"code": note.code, "text": _text(note.text)}
+
+
+def _text(text: str) -> str:
+    """Text that UTF-8 can hold; a name on disk may be bytes in no encoding."""
+    return text.encode("utf-8", errors="replace").decode("utf-8")

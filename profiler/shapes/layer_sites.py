@@ -1,14 +1,13 @@
 """Sites from point layers: GeoJSON, GeoPackage, GPX, KML and shapefiles."""
 
-import re
-import warnings
 from collections.abc import Iterator
 from dataclasses import dataclass
 from pathlib import Path
-from typing import Any, Final
+from typing import Any
 
-from profiler.errors import DemError, InputError
+from profiler.errors import InputError
 from profiler.model import Note, Point
+from profiler.shapes.layers import Layer, read_layers
 from profiler.shapes.site import (
     GROUND_HEADINGS,
     NAME_HEADINGS,
@@ -18,39 +17,6 @@ from profiler.shapes.site import (
     column_of,
     ground_from,
 )
-
-#: The layer of a GPX file that holds places; the others repeat tracks point by point.
-_GPX_LAYER: Final = "waypoints"
-#: What each kind of file begins with, comments and marks left out.
-_BEGINNINGS: Final = {
-    ".geojson": b"{",
-    ".json": b"{",
-    ".gpkg": b"SQLite format 3",
-    ".shp": b"'\n",
-    ".gpx": b"gpx",
-    ".kml": b"kml",
-}
-#: Endings of the names of files that `read_layer_sites` reads.
-LAYER_SUFFIXES: Final = tuple(_BEGINNINGS)
-_XML: Final = (".gpx", ".kml")
-#: The root of an XML file must begin within so much [bytes]; our choice.
-_ROOT_WITHIN: Final = 65_536
-_BEFORE_ROOT: Final = re.compile(rb"<\?.*?\?>|<!--.*?-->", re.DOTALL)
-_ROOT: Final = re.compile(rb"[^<]*<(?:[\w.-]+:)?([\w.-]+)")
-_DECLARES: Final = re.compile(rb"<!(?:DOCTYPE|ENTITY)", re.IGNORECASE)
-#: Text that turns a file into a list of other files and hosts to read.
-_REDIRECTS: Final = b"<OGRVRTDataSource"
-
-
-@dataclass(frozen=True, slots=True, kw_only=True)
-class _Layer:
-    """One layer as read."""
-
-    crs: str | None
-    shapes: Any
-    """(n,) shapely geometries, None where a feature has none."""
-    columns: dict[str, Any]
-    """Column name to (n,) array of values."""
 
 
 @dataclass(slots=True, kw_only=True)
@@ -82,11 +48,10 @@ def read_layer_sites(path: Path) -> SiteFile:
         If the file cannot be read, is not what its name says, declares XML entities,
         states no CRS, or holds no named point.
     """
-    _refuse_pretender(path)
     left = _Left()
     sites: list[Site] = []
     headings: list[str] = []
-    for layer in _layers(path):
+    for layer in read_layers(path, _is_wanted):
         headings += layer.columns
         sites.extend(_sites_of(layer, path, left))
     if not sites and left.no_names:
@@ -114,86 +79,12 @@ def _notes(path: Path, left: _Left) -> tuple[Note, ...]:
     )
 
 
-def _refuse_pretender(path: Path) -> None:
-    """Refuse a file that is not what its name says, or whose XML is a trap."""
-    suffix = path.suffix.lower()
-    if suffix == ".gpkg":
-        with path.open("rb") as file:
-            head = data = file.read(len(_BEGINNINGS[suffix]))
-    else:
-        data = path.read_bytes().replace(b"\x00", b"")  # UTF-16 reads like ASCII
-        head = data.lstrip(b"\xef\xbb\xbf\xff\xfe \t\r\n")
-    if not head:
-        msg = f"{path.name} is empty."
-        raise InputError(msg)
-    if suffix in _XML:
-        root = _ROOT.match(_BEFORE_ROOT.sub(b"", data[:_ROOT_WITHIN]))
-        head = root[1] if root else b""
-        if _DECLARES.search(data):
-            msg = (
-                f"{path.name} declares its own XML entities or document type and is "
-                "not read; save it again without them."
-            )
-            raise InputError(msg)
-    if _REDIRECTS in data or not head.startswith(_BEGINNINGS[suffix]):
-        msg = f"{path.name} is not what its name says: no {suffix[1:]} file."
-        raise InputError(msg)
-
-
-def _layers(path: Path) -> list[_Layer]:
-    import shapely
-    from pyogrio import errors
-
-    whole = str(path.resolve())
-    try:
-        with warnings.catch_warnings():
-            # the library warns of odd fields and dates, which are not read here
-            warnings.simplefilter("ignore")
-            return [_layer(whole, name) for name in _layer_names(whole)]
-    except (
-        errors.DataSourceError,
-        errors.DataLayerError,
-        errors.FeatureError,
-        errors.GeometryError,
-        errors.FieldError,
-        errors.CRSError,
-        shapely.errors.ShapelyError,
-        UnicodeDecodeError,
-    ) as error:
-        cause = str(error).replace(whole, path.name).replace("; ", ", ").rstrip(". ")
-        if "not recognized" in cause:
-            cause = f"it is broken, or no {path.suffix[1:].lower()} file"
-        msg = f"{path.name} cannot be read: {cause}."
-        raise InputError(msg) from error
-
-
-def _layer_names(whole: str) -> list[str]:
-    import pyogrio
-
-    names = [name for name, kind in pyogrio.list_layers(whole) if kind is not None]
-    if whole.lower().endswith(".gpx"):
-        return [name for name in names if name == _GPX_LAYER]
-    return names
-
-
-def _layer(whole: str, name: str) -> _Layer:
-    import pyogrio
-    import shapely
-    from pyogrio import raw
-
-    fields = pyogrio.read_info(whole, layer=name)["fields"]
-    wanted = [field for field in fields if _is_wanted(field)]
-    meta, _, shapes, values = raw.read(whole, layer=name, columns=wanted, force_2d=True)
-    columns = dict(zip(meta["fields"], values, strict=True))
-    return _Layer(crs=meta["crs"], shapes=shapely.from_wkb(shapes), columns=columns)
-
-
 def _is_wanted(field: str) -> bool:
     wanted = (*NAME_HEADINGS, *NOTE_HEADINGS, *GROUND_HEADINGS)
     return column_of([field], wanted) is not None
 
 
-def _sites_of(layer: _Layer, path: Path, left: _Left) -> Iterator[Site]:
+def _sites_of(layer: Layer, path: Path, left: _Left) -> Iterator[Site]:
     """Named points of a layer; the others are counted."""
     points = [_single_point(shape) for shape in layer.shapes]
     left.no_points += sum(point is None for point in points)
@@ -204,9 +95,9 @@ def _sites_of(layer: _Layer, path: Path, left: _Left) -> Iterator[Site]:
     ground_at = column_of(headings, tuple(GROUND_HEADINGS))
     if not kept:
         return
-    places = _to_wgs84([points[i] for i in kept], layer.crs, path)
+    places = _to_wgs84([points[i] for i in kept], layer, path)
     for i, (lat_deg, lon_deg) in zip(kept, places, strict=True):
-        name = _text(layer, name_at, i)
+        name = layer.text(name_at, i)
         if not name:
             left.no_names += 1
             continue
@@ -224,15 +115,8 @@ def _sites_of(layer: _Layer, path: Path, left: _Left) -> Iterator[Site]:
             name=name,
             point=point,
             surveyed_ground_m=ground_m,
-            note=_text(layer, note_at, i),
+            note=layer.text(note_at, i),
         )
-
-
-def _text(layer: _Layer, column: int | None, row: int) -> str:
-    if column is None:
-        return ""
-    value = layer.columns[list(layer.columns)[column]][row]
-    return "" if value is None or value != value else str(value).strip()
 
 
 def _single_point(shape: Any) -> Any:
@@ -244,26 +128,13 @@ def _single_point(shape: Any) -> Any:
     return shape if shape.geom_type == "Point" else None
 
 
-def _to_wgs84(
-    points: list[Any], crs: str | None, path: Path
-) -> list[tuple[float, float]]:
+def _to_wgs84(points: list[Any], layer: Layer, path: Path) -> list[tuple[float, float]]:
     """Latitude and longitude [deg] of points whose x is easting or longitude."""
     import numpy as np
 
-    from profiler.earth.projection import crs_from_user, projector
-
-    if not crs:
-        msg = (
-            f"{path.name} states no CRS; save it with one, or as CSV with the columns "
-            "name, lat, lon."
-        )
-        raise InputError(msg)
-    try:
-        found = projector(crs) if "[" in crs else crs_from_user(crs)
-    except (DemError, InputError) as error:
-        msg = f"{path.name}: its CRS cannot be used. {error}"
-        raise InputError(msg) from error
+    remedy = "save it with one, or as CSV with the columns name, lat, lon"
+    crs = layer.projector(path, remedy=remedy)
     x = np.array([point.x for point in points])
     y = np.array([point.y for point in points])
-    lat_deg, lon_deg = found.to_wgs84(x, y)
+    lat_deg, lon_deg = crs.to_wgs84(x, y)
     return list(zip(lat_deg.tolist(), lon_deg.tolist(), strict=True))

@@ -6,7 +6,8 @@ from typing import Final
 
 from profiler.errors import InputError
 from profiler.shapes.csv_sites import read_csv_sites
-from profiler.shapes.layer_sites import LAYER_SUFFIXES, read_layer_sites
+from profiler.shapes.layer_sites import read_layer_sites
+from profiler.shapes.layers import LAYER_SUFFIXES
 from profiler.shapes.site import Site, SiteFile
 
 _TABLE_SUFFIXES: Final = (".csv", ".tsv", ".txt")

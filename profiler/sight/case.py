@@ -4,6 +4,7 @@ The analysis, the needed heights and the critical bending all ask the same thing
 other numbers; this is the one place that asks it.
 """
 
+import math
 from dataclasses import dataclass, replace
 from typing import NamedTuple
 
@@ -19,6 +20,10 @@ from profiler.sight.line import (
     spots,
 )
 from profiler.sight.view import Rays, before, horizon_index, rays
+
+#: Largest angle between the ends at the centre of the effective earth [rad]; our
+#: choice, well inside half a turn, beyond which the sight line has no height.
+QUARTER_TURN = math.pi / 2.0
 
 
 class Aim(NamedTuple):
@@ -110,7 +115,7 @@ def look_at(case: Case) -> Look:
         known=known,
         void=counted.void,
         at=at,
-        seen=before(rays(known, case.eye_m, case.kappa_per_m), line.length_m),
+        seen=rays(known, case.eye_m, case.kappa_per_m),
         lowest_m=float(at.margin_m.min()) if at.margin_m.size else np.inf,
         closest_m=float(rest.min()) if rest.size else np.inf,
     )

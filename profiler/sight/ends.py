@@ -21,7 +21,8 @@ def end_report(
     role : str
         "from" or "to": named when the station has no name.
     survey : bool
-        Whether a surveyed elevation is used instead of the DEM's.
+        Whether a surveyed elevation is used instead of the DEM's. If not, a station
+        that has one may stand under the DEM's ground, which then hides it.
 
     Raises
     ------
@@ -39,7 +40,10 @@ def end_report(
             raise _no_ground(station, role)
         amsl = ground + agl
     elif ground is not None:
-        agl = _above_ground(station, amsl - ground, ground, role)
+        agl = amsl - ground
+        if survey or station.surveyed_ground_m is None:
+            agl = _above_ground(station, agl, ground, role)
+            amsl = max(amsl, ground)
     return EndReport(
         name=station.name,
         lat_deg=station.point.lat_deg,

@@ -7,6 +7,13 @@ import numpy as np
 from profiler.model.arrays import FloatArray
 from profiler.model.terrain import PathProfile
 
+#: Ground this near to an end is a piece of its own [m]; our choice: over it the
+#: margin beside a station on the ground leaves its slope there by under 1e-6 m.
+BESIDE_M = 0.01
+#: Nearer to an end than this quotients with the distance to it are rounding [m]; less
+#: than half of `BESIDE_M`.
+TOO_NEAR_M = 0.004
+
 
 class Quadratic(NamedTuple):
     """a + b·u + c·u² on each piece, u from 0 at its start to 1 at its end."""
@@ -55,9 +62,9 @@ class Ground(NamedTuple):
 
 
 def ground_of(profile: PathProfile) -> Ground:
-    """Ground pieces of a path profile."""
+    """Pieces of a path profile, ground and cover together."""
     index = profile.piece_start[:, None] + np.arange(3)
-    return Ground(profile.dist_m[index], profile.ground_m[index])
+    return Ground(profile.dist_m[index], profile.top_m[index])
 
 
 def clip(ground: Ground, low_m: float, high_m: float) -> Ground:
@@ -85,6 +92,26 @@ def clip(ground: Ground, low_m: float, high_m: float) -> Ground:
         new_dist, new_height = part.place(u)
         dist[cut, k], height[cut, k] = new_dist, new_height
     return Ground(dist, height)
+
+
+def with_ends(ground: Ground, length_m: float) -> Ground:
+    """The same ground with the first and last centimetre as pieces of their own.
+
+    A station on the ground is hidden by the slope right beside it, and one below it
+    (surveyed) by the ground's very edge: half a cell away either can look clear.
+    """
+    first = clip(ground, 0.0, BESIDE_M)
+    between = clip(ground, BESIDE_M, length_m - BESIDE_M)
+    last = clip(ground, length_m - BESIDE_M, length_m)
+    return joined(joined(first, between), last)
+
+
+def joined(first: Ground, second: Ground) -> Ground:
+    """The pieces of one, then those of the other."""
+    return Ground(
+        np.concatenate([first.dist_m, second.dist_m]),
+        np.concatenate([first.height_m, second.height_m]),
+    )
 
 
 def mirrored(ground: Ground, length_m: float) -> Ground:

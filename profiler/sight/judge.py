@@ -5,7 +5,7 @@ from typing import NamedTuple
 
 import numpy as np
 
-from profiler.constants import GRAZING_M, VOID_BELOW_M
+from profiler.constants import GRAZING_M, M_PER_KM, VOID_BELOW_M
 from profiler.earth import bend, geodesic_path
 from profiler.errors import InputError
 from profiler.kernels.circle import elevation_tangent
@@ -15,6 +15,7 @@ from profiler.model import (
     BoolArray,
     EndReport,
     GeodesicPath,
+    Interpolation,
     OtherGround,
     PathProfile,
     Place,
@@ -24,9 +25,9 @@ from profiler.model import (
     Verdict,
     VoidStretch,
 )
-from profiler.sight.case import Case, Look, look_at
+from profiler.sight.case import QUARTER_TURN, Case, Look, look_at
 from profiler.sight.ends import end_report
-from profiler.sight.ground import ground_of
+from profiler.sight.ground import ground_of, joined, with_ends
 from profiler.sight.line import blocked_runs, decisive
 from profiler.sight.needed import needed
 from profiler.sight.notes import cautions_for, warnings_for
@@ -36,6 +37,7 @@ from profiler.sight.places import place_at, stretch_of, void_stretches
 from profiler.sight.target import shown_target
 from profiler.sight.view import front_crest_index, horizon_index, is_seen, rays
 from profiler.terrain import Terrain, sample_path
+from profiler.terrain.at_points import ground_at
 
 
 class _Ready(NamedTuple):
@@ -87,14 +89,16 @@ def judge(
     DemError
         If a file is damaged; OutsideDemError if an end has no ground.
     """
-    path = geodesic_path(eye.point, target.point)
-    _check_lengths(path, ignore_near_m, own_hill_m)
+    # a point in the wrong place is told before a path that is far too long
     check_inside(terrain, eye, role="from")
     check_inside(terrain, target, role="to")
+    path = geodesic_path(eye.point, target.point)
+    _check_lengths(path, ignore_near_m, own_hill_m)
     profile = sample_path(terrain, path)
     _check_cell(profile, path)
     earth = bend(air or Air(), path.radius_m)
-    ends = _ends(eye, target, profile, survey=True)
+    _check_bending(earth, path)
+    ends = _ends(eye, target, _end_ground(terrain, profile, path))
     hill_m = 0.0
     if ends[1].agl_m == 0.0:
         hill_m = own_hill_radius(terrain, path, own_hill_m)
@@ -132,14 +136,41 @@ def _check_cell(profile: PathProfile, path: GeodesicPath) -> None:
         raise InputError(msg)
 
 
+def _check_bending(earth: Bending, path: GeodesicPath) -> None:
+    if abs(earth.kappa_per_m) * path.length_m >= QUARTER_TURN:
+        msg = (
+            f"With {earth.stated} the effective earth turns a quarter circle or more "
+            f"over {path.length_m / M_PER_KM:.0f} km: no sight line exists. Use a "
+            "shorter path or less bending."
+        )
+        raise InputError(msg)
+
+
 def _ends(
-    eye: Station, target: Station, profile: PathProfile, *, survey: bool
+    eye: Station, target: Station, ground: tuple[float | None, float | None]
 ) -> tuple[EndReport, EndReport]:
-    first, last = (float(profile.ground_m[k]) for k in (0, -1))
     return (
-        end_report(eye, _known(first), role="from", survey=survey),
-        end_report(target, _known(last), role="to", survey=survey),
+        end_report(eye, ground[0], role="from"),
+        end_report(target, ground[1], role="to"),
     )
+
+
+def _end_ground(
+    terrain: Terrain, profile: PathProfile, path: GeodesicPath
+) -> tuple[float | None, float | None]:
+    """Ground that the DEM gives at the two ends [m].
+
+    With the highest of four posts the stations still stand on the bilinear surface:
+    lifting them with it would make the cautious way the bolder one.
+    """
+    first, last = (float(profile.ground_m[k]) for k in (0, -1))
+    if profile.interpolation is Interpolation.HIGHEST:
+        lat = np.array([path.start.lat_deg, path.end.lat_deg])
+        lon = np.array([path.start.lon_deg, path.end.lon_deg])
+        bilinear = ground_at(terrain, lat, lon)
+        # beyond the DEM, filled sea is all there is
+        first, last = np.where(np.isnan(bilinear), (first, last), bilinear).tolist()
+    return _known(first), _known(last)
 
 
 def _known(value: float) -> float | None:
@@ -164,7 +195,7 @@ def _case(
     near_m: float,
 ) -> Case:
     return Case(
-        ground=ground_of(profile),
+        ground=with_ends(ground_of(profile), path.length_m),
         length_m=path.length_m,
         eye_m=ends[0].amsl_m,
         top_m=ends[1].amsl_m,
@@ -204,7 +235,11 @@ def _on_dem_ground(
     eye: Station, target: Station, ready: _Ready, void_below_m: float
 ) -> OtherGround:
     """The same question without the surveyed elevations."""
-    ends = _ends(eye, target, ready.profile, survey=False)
+    from_dem, to_dem = (end.dem_ground_m for end in ready.ends)
+    ends = (
+        end_report(eye, from_dem, role="from", survey=from_dem is None),
+        end_report(target, to_dem, role="to", survey=to_dem is None),
+    )
     case = _case(
         ready.path,
         ready.profile,
@@ -334,13 +369,15 @@ def _elevation_deg(look: Look, eye_m: float, aim_m: float) -> float:
 def _ground_seen(ready: _Ready) -> BoolArray:
     """(n,) whether the ground at each sample of the profile is seen from the eye."""
     case, dist = ready.case, ready.profile.dist_m
-    all_rays = rays(case.ground.known, case.eye_m, case.kappa_per_m)
-    visible = is_seen(all_rays)
-    seen = np.zeros(dist.size, dtype=np.bool_)
-    where = np.searchsorted(all_rays.dist_m, dist)
-    there = np.minimum(where, all_rays.dist_m.size - 1)
+    ground = joined(case.ground.known, ground_of(ready.profile).known)
+    all_rays = rays(ground, case.eye_m, case.kappa_per_m)
+    seen = dist == 0.0
     if all_rays.dist_m.size:
-        seen = visible[there] & (all_rays.dist_m[there] == dist)
-        seen |= dist == 0.0
-    seen &= np.isfinite(ready.profile.ground_m)
-    return seen
+        # where the ground steps two samples share a distance, the nearer side first
+        second = np.diff(dist, prepend=-1.0) == 0.0
+        low = np.searchsorted(all_rays.dist_m, dist)
+        high = np.searchsorted(all_rays.dist_m, dist, side="right") - 1
+        there = np.minimum(np.where(second, high, low), all_rays.dist_m.size - 1)
+        seen |= is_seen(all_rays)[there] & (all_rays.dist_m[there] == dist)
+    known: BoolArray = seen & np.isfinite(ready.profile.ground_m)
+    return known

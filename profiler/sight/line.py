@@ -6,8 +6,8 @@ import numpy as np
 
 from profiler.constants import GRAZING_M
 from profiler.kernels.circle import sight_height
-from profiler.model.arrays import BoolArray, FloatArray
-from profiler.sight.ground import Ground, inner_roots, quadratic
+from profiler.model.arrays import BoolArray, FloatArray, IntArray
+from profiler.sight.ground import TOO_NEAR_M, Ground, inner_roots, quadratic
 
 #: Differences of margins below this are rounding [m]; heights carry 1e-12 m.
 ROUNDING_M = 1e-9
@@ -80,7 +80,7 @@ def spots(line: Line, ground: Ground) -> Spots:
     all_dist, all_height = np.concatenate(dist), np.concatenate(height)
     order = np.argsort(all_dist, kind="stable")
     all_dist, all_height = all_dist[order], all_height[order]
-    between = (all_dist > 0.0) & (all_dist < line.length_m)
+    between = np.minimum(all_dist, line.length_m - all_dist) > TOO_NEAR_M
     all_dist, all_height = all_dist[between], all_height[between]
     return Spots(all_dist, all_height, line.height(all_dist) - all_height)
 
@@ -186,17 +186,29 @@ def decisive(
     Notes
     -----
     Spots within 1 mm of the winner tie (for clear: within 1 mm of touching when it
-    touches); the one nearest mid-path is taken, the same from both ends.
+    touches; for blocked: those that block). Neighbouring ones are one place, which
+    stands where it is tightest; of several places the one nearest mid-path is taken,
+    the same from both ends.
     """
     if at.margin_m.size == 0:
         return None
     if blocked:
         excess = at.margin_m - at.margin_m.min()
+        ties = (excess <= GRAZING_M) & (at.margin_m < -GRAZING_M)
     else:
         ratio = first_to_touch(line, at)
         excess = (ratio - ratio.min()) * at.dist_m * (line.length_m - at.dist_m)
-    tied = np.flatnonzero(excess <= GRAZING_M)
-    off_mid = at.dist_m[tied] - line.length_m / 2.0
-    nearest = np.abs(off_mid)
-    close = tied[nearest <= nearest.min() + GRAZING_M]
-    return int(close[0] if low_end_first else close[-1])
+        ties = excess <= GRAZING_M
+    tied = np.flatnonzero(ties)
+    off_mid = at.dist_m - line.length_m / 2.0
+
+    def nearest_mid(index: IntArray) -> int:
+        off = np.abs(off_mid[index])
+        close = index[off <= off.min() + GRAZING_M]
+        return int(close[0] if low_end_first else close[-1])
+
+    runs = np.split(tied, np.flatnonzero(np.diff(tied) > 1) + 1)
+    places = [
+        nearest_mid(run[excess[run] <= excess[run].min() + ROUNDING_M]) for run in runs
+    ]
+    return nearest_mid(np.array(places))

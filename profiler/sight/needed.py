@@ -10,10 +10,11 @@ from dataclasses import replace
 
 import numpy as np
 
+from profiler.constants import GRAZING_M
 from profiler.kernels.circle import ray_height
 from profiler.model import Needed, Stretch
-from profiler.sight.case import Case, Look, least_ratio, look_at
-from profiler.sight.ground import mirrored
+from profiler.sight.case import QUARTER_TURN, Case, Look, least_ratio, look_at
+from profiler.sight.ground import clip, joined, mirrored
 from profiler.sight.view import before, horizon_index, rays
 
 #: Step to which heights are rounded [m]: 1 cm, as the record promises.
@@ -28,8 +29,12 @@ MOST_TRIES = 4
 MOST_STEPS = 40
 #: Curvature found well enough [1/m]: 1 mm in the middle of 450 km.
 KAPPA_ENOUGH = 4e-14
+#: Margin of the centimetre beside an end found well enough, over that centimetre [1].
+RATIO_ENOUGH = 1e-9
 #: Height found well enough [m].
 HEIGHT_ENOUGH_M = 1e-6
+#: Depth to which ground may rise into a line found clear [m].
+BAND_M = GRAZING_M - 2.0 * HEIGHT_ENOUGH_M
 #: Height above ground beyond which no mast helps [m]: higher than any ground.
 NO_HELP_ABOVE_M = 10_000.0
 #: Largest coefficient of refraction worth naming [1]; beyond the measured extremes
@@ -54,7 +59,7 @@ def needed(
     Parameters
     ----------
     case, now : Case, Look
-        The question and its look.
+        The question and its look; only the margin to spare comes from it.
     from_ground_m, to_ground_m : float or None [m]
         Ground at the ends; None where unknown: no height above it can be named.
     radius_m : float [m]
@@ -62,16 +67,18 @@ def needed(
     stretches : tuple of Stretch
         Blocked stretches, for naming the one that sets a figure.
     """
-    from_agl, from_at = _from_agl(case, now, from_ground_m)
-    to_agl, to_at = _to_agl(case, now, to_ground_m)
+    bias = now.lowest_m if now.is_blocked else now.closest_m
+    case = _within_band(case)
+    look = look_at(case)
+    from_agl, from_at = _from_agl(case, look, from_ground_m)
+    to_agl, to_at = _to_agl(case, look, to_ground_m)
     least_agl = min(
         case.eye_m - from_ground_m if from_ground_m is not None else math.inf,
         case.top_m - to_ground_m if to_ground_m is not None else math.inf,
     )
-    both, both_at = _both_extra(case, now, least_agl)
-    kappa = _critical_kappa(case)
+    both, both_at = _both_extra(case, look, least_agl)
+    kappa = _critical_kappa(case, radius_m)
     ke, kr = _ratios(case, kappa, radius_m)
-    bias = now.lowest_m if now.is_blocked else now.closest_m
     return Needed(
         from_agl_m=from_agl,
         to_agl_m=to_agl,
@@ -83,6 +90,19 @@ def needed(
         to_stretch=_stretch_at(stretches, to_at),
         both_stretch=_stretch_at(stretches, both_at),
     )
+
+
+def _within_band(case: Case) -> Case:
+    """The case with the ground before any own hill lower by the grazing band.
+
+    What rises into the line by less than the band does not block, so the least change
+    that clears is the one that clears this ground.
+    """
+    far_m = case.length_m - case.hill_m
+    low = clip(case.ground, 0.0, far_m)
+    hill = clip(case.ground, far_m, case.length_m)
+    low = low._replace(height_m=low.height_m - BAND_M)
+    return replace(case, ground=joined(low, hill))
 
 
 def _floor(value: float) -> float:
@@ -102,8 +122,12 @@ def _safe(
 
 
 def _clears(case: Case) -> bool:
-    """Whether a case is clear but for rounding beside an end on the ground."""
-    return look_at(case).lowest_m > -HEIGHT_ENOUGH_M
+    """Whether a case within the band is clear, but for rounding."""
+    return _is_clear(look_at(case))
+
+
+def _is_clear(look: Look) -> bool:
+    return look.lowest_m > -HEIGHT_ENOUGH_M
 
 
 def _from_agl(
@@ -112,20 +136,20 @@ def _from_agl(
     """Least height of the eye above its ground, and the place that sets it [m]."""
     if ground_m is None or now.known.dist_m.size == 0:
         return None, math.nan
-    line = now.line
-    back = before(
-        rays(mirrored(now.known, line.length_m), line.aim_m, case.kappa_per_m),
-        line.length_m,
-    )
-    inside = back.dist_m > 0.0
-    if not np.any(inside):
-        return 0.0, math.nan
-    best = horizon_index(back)
-    if best is None:
-        return 0.0, math.nan
-    eye = ray_height(
-        line.length_m, float(back.tangent[best]), line.aim_m, case.kappa_per_m
-    )
+    eye, where = case.eye_m, math.nan
+    for _ in range(MOST_STEPS):
+        aim = replace(case, eye_m=eye).aim()
+        ground = mirrored(now.known, aim.dist_m)
+        back = before(rays(ground, aim.height_m, case.kappa_per_m), aim.dist_m)
+        best = horizon_index(back)
+        if best is None:
+            return 0.0, math.nan
+        last, tangent = eye, float(back.tangent[best])
+        eye = float(ray_height(aim.dist_m, tangent, aim.height_m, case.kappa_per_m))
+        eye, where = max(eye, ground_m), aim.dist_m - float(back.dist_m[best])
+        # only the aim point of an own hill moves with the eye
+        if case.hill_m <= 0.0 or abs(eye - last) <= HEIGHT_ENOUGH_M:
+            break
 
     def clears(agl_m: float) -> bool:
         higher = replace(
@@ -133,8 +157,7 @@ def _from_agl(
         )
         return _clears(higher)
 
-    agl = _safe(max(eye - ground_m, 0.0), HEIGHT_STEP_M, clears, NO_HELP_ABOVE_M)
-    return agl, line.length_m - float(back.dist_m[best])
+    return _safe(eye - ground_m, HEIGHT_STEP_M, clears, NO_HELP_ABOVE_M), where
 
 
 def _to_agl(
@@ -143,7 +166,7 @@ def _to_agl(
     """Least height of the top above its ground, and the place that sets it [m]."""
     if ground_m is None or now.known.dist_m.size == 0:
         return None, math.nan
-    if case.hill_m > 0.0 and not now.is_blocked:
+    if case.hill_m > 0.0 and _is_clear(now):
         return 0.0, math.nan
     plain = case.plain()
     counted = plain.counted().known
@@ -185,7 +208,7 @@ def _both_extra(
     """Least height to add at both ends, and the place that sets it [m]."""
     if now.at.margin_m.size == 0:
         return None, math.nan
-    if not now.is_blocked and (case.hill_m > 0.0 or least_agl_m <= HEIGHT_ENOUGH_M):
+    if _is_clear(now) and (case.hill_m > 0.0 or least_agl_m <= HEIGHT_ENOUGH_M):
         return 0.0, math.nan
     extra, where = 0.0, math.nan
     for _ in range(MOST_STEPS):
@@ -203,15 +226,17 @@ def _both_extra(
     return _safe(extra, HEIGHT_STEP_M, clears, NO_HELP_ABOVE_M), where
 
 
-def _critical_kappa(case: Case) -> float | None:
-    """Largest effective curvature at which the line is clear [1/m]."""
+def _critical_kappa(case: Case, radius_m: float) -> float | None:
+    """Largest effective curvature at which the line is clear [1/m]; None: none near."""
     kappa = case.kappa_per_m
+    enough = max(KAPPA_ENOUGH, RATIO_ENOUGH / case.length_m)
     for _ in range(MOST_STEPS):
         ratio = least_ratio(look_at(replace(case, kappa_per_m=kappa)))
-        if not math.isfinite(ratio):
-            return None
         kappa += 2.0 * ratio
-        if abs(2.0 * ratio) <= KAPPA_ENOUGH:
+        named = NO_HELP_BELOW_KR <= 1.0 - kappa * radius_m <= NO_HELP_ABOVE_KR
+        if not named or abs(kappa) * case.length_m >= QUARTER_TURN:
+            return None
+        if abs(2.0 * ratio) <= enough:
             return kappa
     return None
 
@@ -220,7 +245,7 @@ def _ratios(
     case: Case, kappa: float | None, radius_m: float
 ) -> tuple[float | None, float | None]:
     """Least ke (None unless positive) and kr at which the line is clear [1]."""
-    if kappa is None or 1.0 - kappa * radius_m < NO_HELP_BELOW_KR:
+    if kappa is None:
         return None, None
 
     def clears_kr(kr: float) -> bool:

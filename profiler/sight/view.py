@@ -7,11 +7,11 @@ import numpy as np
 from profiler.constants import CREST_DEPTH_M
 from profiler.kernels.circle import elevation_tangent, ray_height
 from profiler.model.arrays import BoolArray, FloatArray
-from profiler.sight.ground import Ground, inner_roots, quadratic
+from profiler.sight.ground import TOO_NEAR_M, Ground, inner_roots, quadratic
 
 #: Ground whose angle is this far below the highest so far still counts as seen [1];
-#: rounding of the angle, a micrometre at ten kilometres.
-SAME_TANGENT = 1e-10
+#: rounding of the angle, ten micrometres at ten kilometres.
+SAME_TANGENT = 1e-9
 
 
 class Rays(NamedTuple):
@@ -57,7 +57,7 @@ def rays(ground: Ground, eye_m: float, kappa_per_m: float) -> Rays:
         height.append(z)
     all_dist, all_height = np.concatenate(dist), np.concatenate(height)
     order = np.argsort(all_dist, kind="stable")
-    order = order[all_dist[order] > 0.0]
+    order = order[all_dist[order] > TOO_NEAR_M]
     all_dist, all_height = all_dist[order], all_height[order]
     tangent = elevation_tangent(all_dist, all_height, eye_m, kappa_per_m)
     return Rays(all_dist, all_height, tangent)

@@ -1,6 +1,6 @@
-"""Posts around one point, to tell whether it is a top."""
+"""Posts around one point, to tell whether it is a top or stands on trees."""
 
-from typing import NamedTuple
+from typing import Final, NamedTuple
 
 import numpy as np
 
@@ -8,6 +8,15 @@ from profiler.earth.geodesic import distances_m
 from profiler.model import FloatArray, Point
 from profiler.terrain.dem import Terrain
 from profiler.terrain.lattice import Lattice, PostReader
+
+#: Radius of the ring around a station, at least [m] and in cells [1]; our choice: a
+#: clump of trees or a roof is seldom wider, and a clearing seldom further.
+RING_M: Final = 60.0
+RING_CELLS: Final = 2.0
+#: Fewest posts that tell a slope from a clump [1]; our choice: a plane takes three.
+RING_POSTS: Final = 6
+#: Half a turn [deg].
+HALF_TURN_DEG: Final = 180.0
 
 
 class NearPosts(NamedTuple):
@@ -19,6 +28,9 @@ class NearPosts(NamedTuple):
     """(n,) elevation; NaN where there is none."""
     cell_m: float
     """The longer side of the grid's cell [m]."""
+    lat_deg: FloatArray
+    """(n,) where the posts are."""
+    lon_deg: FloatArray
 
 
 def is_inside(terrain: Terrain, point: Point) -> bool:
@@ -86,7 +98,56 @@ def _within(
     lat, lon = lattice.crs.to_wgs84(x, y)
     dist = distances_m(point, lat, lon)
     near = dist <= radius_m
-    return NearPosts(dist[near], height_m.ravel()[near], max(lattice.cell_m))
+    return NearPosts(
+        dist[near], height_m.ravel()[near], max(lattice.cell_m), lat[near], lon[near]
+    )
+
+
+def rise_over_ring(terrain: Terrain, point: Point, ground_m: float) -> float | None:
+    """How far ground stands above the lowest post around it, slope taken out.
+
+    Parameters
+    ----------
+    terrain : Terrain
+    point : Point
+    ground_m : float [m]
+        Ground at the point.
+
+    Returns
+    -------
+    float or None [m]
+        0 or more; None with fewer than `RING_POSTS` known posts around.
+
+    Raises
+    ------
+    DemError
+        If a file is damaged.
+
+    Notes
+    -----
+    The slope is the plane that fits the posts within `RING_M` (2 cells of a coarser
+    grid) best; without taking it out every hillside would look like a clump of trees.
+    """
+    lattice = finest_at(terrain, point)
+    if lattice is None:
+        return None
+    radius = max(RING_M, RING_CELLS * max(lattice.cell_m))
+    near = posts_near(terrain, point, radius)
+    if near is None:
+        return None
+    known = np.isfinite(near.height_m)
+    if np.count_nonzero(known) < RING_POSTS:
+        return None
+    height = near.height_m[known]
+    north = near.lat_deg[known] - point.lat_deg
+    east = near.lon_deg[known] - point.lon_deg
+    east = (east + HALF_TURN_DEG) % (2.0 * HALF_TURN_DEG) - HALF_TURN_DEG
+    sides = np.column_stack([np.ones_like(height), east, north])
+    # a column of one size keeps the fit sound wherever on earth it is
+    sides /= np.maximum(np.abs(sides).max(axis=0), np.finfo(float).tiny)
+    plane, *_ = np.linalg.lstsq(sides, height, rcond=None)
+    lowest = float(np.min(height - sides[:, 1:] @ plane[1:]))
+    return max(ground_m - lowest, 0.0)
 
 
 def _post_of(lattice: Lattice, point: Point) -> tuple[float, float] | None:

@@ -121,6 +121,10 @@ def open_grid(path: Path) -> Iterator["rasterio.DatasetReader"]:
             with rasterio.open(path) as dataset:
                 refuse_what_is_no_grid(dataset, path.name)
                 yield dataset
+        except UnicodeEncodeError as error:
+            shown = path.name.encode(errors="replace").decode()
+            msg = f'The name "{shown}" is not UTF-8. Rename the file.'
+            raise DemError(msg) from error
         except RasterioError as error:
             msg = (
                 f'"{path.name}" cannot be read as an elevation grid ({_short(error)}). '

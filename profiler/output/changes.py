@@ -1,0 +1,96 @@
+"""What would change the answer, in plain words: heights, ground and air."""
+
+from typing import Any, Final
+
+from profiler.output.naming import names_of
+from profiler.output.numbers import DOWN, UP, Show, ratio
+
+#: Coefficient of refraction that clear days exceed too seldom to count on [1];
+#: radio's normal 4/3, which light reaches only in strong inversions; our choice.
+KR_TO_COUNT_ON: Final = 0.25
+#: Coefficient of refraction below which no kilometres-long ray was ever bent [1]; our
+#: choice: radio's rarest ke of 1/2 is kr −1.
+KR_OUT_OF_REACH: Final = -1.0
+
+Json = dict[str, Any]
+
+
+def openers(values: Json, show: Show) -> list[str]:
+    """What would open a blocked line; each height suffices as printed.
+
+    Parameters
+    ----------
+    values : dict
+        The record of a blocked line.
+    show : Show
+    """
+    eye, name = names_of(values)
+    needed = values["needed"]
+    parts, sets = [], []
+    for end, who in (("from", eye), ("to", name)):
+        if needed[f"{end}_agl_m"] is not None:
+            parts.append(f"{who} at {show.height(needed[f'{end}_agl_m'], rounding=UP)}")
+            sets.append(needed[f"{end}_stretch"])
+    if needed["both_extra_m"] is not None:
+        parts.append(f"{show.height(needed['both_extra_m'], rounding=UP)} more on both")
+        sets.append(needed["both_stretch"])
+    lines = []
+    if parts:
+        lines.append(", or ".join(parts) + _set_by(sets))
+    other = []
+    if needed["dem_bias_m"] is not None:
+        lower = show.height(-needed["dem_bias_m"], rounding=UP)
+        other.append(f"all ground between {lower} lower")
+    if needed["kr"] is not None:
+        other.append(_kr_text(needed["kr"]))
+    if other:
+        lines.append(("or " if lines else "") + "; or ".join(other))
+    return lines or ["nothing short of other stations"]
+
+
+def _set_by(sets: list[int | None]) -> str:
+    """Which numbered stretch asks for the heights."""
+    known = [s for s in sets if s is not None]
+    if not known or len(known) < len(sets):
+        return ""
+    if len(set(known)) == 1:
+        how_many = {1: "it", 2: "both", 3: "all three"}[len(known)]
+        return f"   ({known[0]} sets {how_many})"
+    return "   (set by " + ", ".join(str(s) for s in known) + " in turn)"
+
+
+def _kr_text(kr: float) -> str:
+    doubt = ", more than you may count on" if kr > KR_TO_COUNT_ON else ""
+    return f"kr {ratio(kr, 2, rounding=UP)}{doubt}"
+
+
+def closers(values: Json, show: Show) -> list[str]:
+    """What would close a clear line.
+
+    Parameters
+    ----------
+    values : dict
+        The record of a clear line.
+    show : Show
+    """
+    needed = values["needed"]
+    parts = []
+    if needed["dem_bias_m"] is not None and needed["dem_bias_m"] > 0.0:
+        higher = show.height(needed["dem_bias_m"], rounding=DOWN)
+        parts.append(f"all ground between more than {higher} higher")
+    if needed["kr"] is not None and needed["kr"] > KR_OUT_OF_REACH:
+        parts.append(f"kr below {ratio(needed['kr'], 2, rounding=UP)}")
+    return ["; or ".join(parts)] if parts else []
+
+
+def enough(values: Json, show: Show) -> list[str]:
+    """Lower heights that a clear line would still be clear with."""
+    parts = []
+    for end, who in zip(("from", "to"), names_of(values), strict=True):
+        least, now = values["needed"][f"{end}_agl_m"], values[end]["agl_m"]
+        if least is None or now is None:
+            continue
+        told = show.height(least, rounding=UP)
+        if least > 0.0 and told != show.height(now, rounding=UP):
+            parts.append(f"{who} at {told}")
+    return [", or ".join(parts)] if parts else []

@@ -1,0 +1,99 @@
+"""The first line of an answer: the verdict in one or two sentences."""
+
+from typing import Any, Final
+
+from profiler.output.naming import capital, names_of
+from profiler.output.numbers import DOWN, Show, arcmin
+
+#: First word by verdict of the record.
+VERDICT_WORDS: Final = {
+    "clear": "SEEN",
+    "blocked": "HIDDEN",
+    "undetermined": "CANNOT SAY",
+}
+
+Json = dict[str, Any]
+
+
+def first_line_parts(values: Json, show: Show) -> tuple[str, str]:
+    """The first line, cut where a figure breaks it.
+
+    Parameters
+    ----------
+    values : dict
+        The record.
+    show : Show
+
+    Returns
+    -------
+    tuple of two str
+        Joined they are the first line.
+    """
+    tell = {"blocked": _hidden, "undetermined": _cannot_say, "clear": _seen}
+    head, tail = tell[values["verdict"]](values, show)
+    return f"{VERDICT_WORDS[values['verdict']]}. {head}", tail
+
+
+def _hidden(values: Json, show: Show) -> tuple[str, str]:
+    at = values["decisive"]
+    eye, name = names_of(values)
+    what = name if values["target"]["height_m"] == 0.0 else f"the top of {name}"
+    over = show.height(-at["margin_m"])
+    where = show.distance(at["distance_m"])
+    return (
+        f"{capital(eye)} does not see {what}:",
+        f" ground at {where} stands {over} above the line.",
+    )
+
+
+def _cannot_say(values: Json, show: Show) -> tuple[str, str]:
+    void, at = values["void"], values["decisive"]
+    known = "No ground is known between"
+    if at is not None:
+        known = f"Known ground is clear by {show.height(at['margin_m'])}"
+    length = show.run(void["end_m"] - void["start_m"])
+    where = show.distance((void["start_m"] + void["end_m"]) / 2.0)
+    above = show.height(void["blocks_above_m"], rounding=DOWN)
+    return (
+        f"{known};",
+        f" {length} of path near {where} have no ground. Above {above} there would "
+        "block.",
+    )
+
+
+def _seen(values: Json, show: Show) -> tuple[str, str]:
+    target = values["target"]
+    eye, name = names_of(values)
+    sees = f"{capital(eye)} sees"
+    if target["shown"] == "part":
+        return _part(values, sees, show)
+    if target["point_shown"] == "none":
+        moved = show.height(target["aim_moved_m"])
+        return (
+            f"{sees} the top of {name}, {moved} before the point given;",
+            f" that point itself lies behind its own hill.{_pass(values, show)}",
+        )
+    if target["height_m"] > 0.0:
+        name = f"all {show.given(target['height_m'])} of {name}"
+    return f"{sees} {name}:", _pass(values, show).replace(" The", " the")
+
+
+def _part(values: Json, sees: str, show: Show) -> tuple[str, str]:
+    target, rest = values["target"], values["horizon"]
+    amount = show.height(target["visible_m"])
+    whole, angle = show.given(target["height_m"]), arcmin(target["visible_arcmin"])
+    return (
+        f"{sees} the upper {amount} of {whole} ({angle});",
+        f" ground at {show.distance(rest['distance_m'])} hides the rest, the line "
+        f"passes it by {show.height(rest['margin_m'])}.",
+    )
+
+
+def _pass(values: Json, show: Show) -> str:
+    at = values["decisive"]
+    if at is None:
+        return " The path has no ground that counts."
+    where = show.distance(at["distance_m"])
+    if values["grazing"]:
+        return f" The line grazes ground at {where}."
+    return f" The line passes ground at {where} by {show.height(at['margin_m'])}."

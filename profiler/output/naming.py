@@ -1,0 +1,27 @@
+"""What the two ends of a path are called in every telling."""
+
+from typing import Any
+
+
+def names_of(values: dict[str, Any]) -> tuple[str, str]:
+    """Names of the eye and the target on one printable line.
+
+    Parameters
+    ----------
+    values : dict
+        The record.
+    """
+    return (
+        printable(values["from"]["name"]) or "the eye",
+        printable(values["to"]["name"]) or "the target",
+    )
+
+
+def printable(text: str) -> str:
+    """Text on one line, without what a terminal would obey."""
+    return " ".join("".join(s if s.isprintable() else " " for s in text).split())
+
+
+def capital(text: str) -> str:
+    """Text that begins a sentence."""
+    return text[:1].upper() + text[1:]
