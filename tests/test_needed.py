@@ -89,10 +89,11 @@ def test_figures_for_a_summit_with_its_own_hill_clear_too(
 ) -> None:
     random = np.random.default_rng(seed)
     start = place(90.0 + random.uniform(-8.0, 8.0), random.uniform(0.0, 500.0))
-    wall = float(random.uniform(5.0, 40.0))
+    # the eye must rise far above the wall, and the aim point moves with it
+    wall = float(random.uniform(62.0, 120.0))
     made = terrain.cap(radius_m=300.0, top_m=60.0, cell_m=30.0)
     posts = made.posts.copy()
-    posts[:, int(900.0 / 30.0 - made.transform[2] / 30.0 - 0.5)] = wall
+    posts[:, int(1500.0 / 30.0 - made.transform[2] / 30.0 - 0.5)] = wall
     ground = opened(tmp_path, made._replace(posts=posts))
 
     def ask(**changes: float) -> str:

@@ -31,6 +31,12 @@ def test_a_wall_hides_what_similar_triangles_say(tmp_path: Path) -> None:
     assert line.target.above_crest_m == pytest.approx(60.0, abs=ROUNDING_M)
 
 
+def test_a_few_metres_below_the_ray_are_a_hidden_part(tmp_path: Path) -> None:
+    line = from_centre(wall(tmp_path), 90.0, 6000.0, eye=195.0, top=250.0)
+    assert line.target.shown is Shown.PART
+    assert line.target.hidden_m == pytest.approx(5.0, abs=ROUNDING_M)
+
+
 def test_a_wall_above_the_top_hides_all_of_it(tmp_path: Path) -> None:
     line = from_centre(wall(tmp_path), 90.0, 6000.0, eye=10.0, top=180.0)
     assert line.target.shown is Shown.NONE

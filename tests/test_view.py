@@ -84,7 +84,8 @@ def test_ground_behind_a_ridge_is_seen_again_where_it_rises_above_the_ray() -> N
 
 def test_a_plane_through_the_eye_is_seen_in_spite_of_rounding() -> None:
     dist = np.linspace(0.0, 9000.0, 301)
-    assert np.all(is_seen(rays(pieces(dist, 1000.0 + 0.1 * dist), 1000.0, 0.0)))
+    height = 1234.567 + 0.137 * dist
+    assert np.all(is_seen(rays(pieces(dist, height), 1234.567, 0.0)))
 
 
 def test_the_front_crest_stands_before_the_last_deep_valley() -> None:

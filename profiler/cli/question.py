@@ -3,18 +3,21 @@
 import os
 from collections.abc import Mapping, Sequence
 from pathlib import Path
-from typing import Any
+from typing import TYPE_CHECKING, Any
 
 import click
 
 from profiler.cli.points import EastingNorthing, LatLon, SiteName, parse_point
 from profiler.cli.quantities import ke_looks_like_kr
-from profiler.constants import EYE_M, SURVEY_GAP_M
+from profiler.constants import EYE_M, KE_RADIO, SURVEY_GAP_M
 from profiler.errors import InputError
 from profiler.model import Air, Point, Station
 from profiler.output.files import check_target
 from profiler.output.numbers import box
 from profiler.terrain import Terrain, open_terrain
+
+if TYPE_CHECKING:
+    from profiler.radio.answer import Rule
 
 #: Room added around a question when the ground it needs is named [deg]; our choice.
 BOX_ROOM_DEG = 0.01
@@ -49,8 +52,45 @@ def air_from(options: Options) -> Air:
             f"coefficient of refraction write --kr {ke:g}."
         )
         click.echo(f"Warning: {text}", err=True)
+    if not given and options["frequency"] is not None:
+        return Air(ke=KE_RADIO, assumed=True)
     kr = 0.0 if options["no_refraction"] else options["kr"]
     return Air(ke=ke, kr=kr, n_gradient_per_km=options["n_gradient"])
+
+
+def rule_from(options: Options) -> "Rule | None":
+    """The clearance rule as stated.
+
+    Raises
+    ------
+    click.UsageError
+        If a rule is stated twice, or one or a missing height has no frequency.
+    """
+    criteria, name = options["criteria"], options["rule_set"]
+    if criteria and name is not None:
+        msg = "--criterion and --rule-set both state a rule. Give one of them."
+        raise click.UsageError(msg)
+    if options["frequency"] is None:
+        if criteria or name is not None:
+            msg = "A clearance rule needs a frequency. Add --frequency, such as 7.5GHz."
+            raise click.UsageError(msg)
+        return None
+    return tuple(criteria) or name
+
+
+def check_radio_heights(options: Options) -> None:
+    """Ask for both heights of a radio path: there is no default antenna.
+
+    Raises
+    ------
+    click.UsageError
+        If one is missing.
+    """
+    missing = sorted(assumed_heights(options))
+    if options["frequency"] is not None and missing:
+        names = " and ".join(f"--{role}-height" for role in missing)
+        msg = f"A radio path has no default heights. Give {names}, such as 20m."
+        raise click.UsageError(msg)
 
 
 def terrain_from(options: Options) -> Terrain:

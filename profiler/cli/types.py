@@ -1,7 +1,7 @@
 """Parameter types of the command line: text in, values out, click's own refusal."""
 
 from collections.abc import Callable
-from typing import TYPE_CHECKING, Final
+from typing import TYPE_CHECKING, Any, Final
 
 import click
 from click.core import ParameterSource
@@ -21,8 +21,9 @@ PointValue = LatLon | EastingNorthing | SiteName
 if TYPE_CHECKING:
     _FloatParam = click.ParamType[float]
     _PointParam = click.ParamType[PointValue]
+    _AnyParam = click.ParamType[Any]
 else:  # click before 8.4 cannot be subscripted
-    _FloatParam = _PointParam = click.ParamType
+    _FloatParam = _PointParam = _AnyParam = click.ParamType
 
 
 class QuantityType(_FloatParam):
@@ -93,3 +94,31 @@ KE: Final = QuantityType("ke", parse_ke)
 KR: Final = QuantityType("kr", parse_kr)
 #: -39; N-units a kilometre.
 N_GRADIENT: Final = QuantityType("N/km", parse_n_gradient)
+
+
+class RadioType(_AnyParam):
+    """A quantity of the radio room, whose parser is loaded only when one is given."""
+
+    def __init__(self, name: str, parser: str) -> None:
+        """Take the name that help shows and the name of the parser."""
+        self.name = name
+        self._parser = parser
+
+    def convert(
+        self, value: Any, param: click.Parameter | None, ctx: click.Context | None
+    ) -> Any:
+        """Value of the parser, or click's usage error (exit 2) with its sentence."""
+        if not isinstance(value, str):
+            return value
+        from profiler.cli import radio_quantities
+
+        try:
+            return getattr(radio_quantities, self._parser)(value)
+        except InputError as error:
+            self.fail(str(error), param, ctx)
+
+
+#: 7.5GHz; hertz inside.
+FREQUENCY: Final = RadioType("frequency", "parse_frequency")
+#: "ke=4/3 f1=0.6 extra=3m"; a Criterion.
+CRITERION: Final = RadioType("criterion", "parse_criterion")

@@ -83,6 +83,8 @@ class Air:
     """Curvature of the ray divided by the earth's [1]; 0 is a straight ray."""
     n_gradient_per_km: float | None = None
     """Refractivity gradient dN/dh [N/km]; about −39 is normal for radio."""
+    assumed: bool = False
+    """Whether the value is a default that nobody stated."""
 
     def __post_init__(self) -> None:
         """Refuse two statements of one thing, and numbers that are none."""
@@ -101,8 +103,9 @@ class Air:
 
     @property
     def is_default(self) -> bool:
-        """Whether nothing was stated and kr 0.13 (light) is used."""
-        return self.ke is None and self.kr is None and self.n_gradient_per_km is None
+        """Whether nobody stated the bending: kr 0.13 for light, ke 4/3 for radio."""
+        nothing = self.ke is None and self.kr is None and self.n_gradient_per_km is None
+        return self.assumed or nothing
 
     @property
     def kr_or_default(self) -> float:

@@ -4,20 +4,25 @@ from dataclasses import dataclass, fields
 from pathlib import Path
 from typing import TYPE_CHECKING, Any
 
-from profiler.constants import VOID_BELOW_M
+from profiler.constants import KE_RADIO, VOID_BELOW_M
 from profiler.model import Air, SightLine, Station
 from profiler.output.exchange import geojson
 from profiler.output.record import record, record_text
+from profiler.output.told import Told
 from profiler.output.words import headline, words
 from profiler.sight import judge
+from profiler.sight.cover_sources import CoverAlong
 from profiler.terrain import Terrain
 
 if TYPE_CHECKING:
     from matplotlib.figure import Figure
 
+    from profiler.radio.answer import Rule
+    from profiler.radio.first_term import Polarization
+
 
 @dataclass(frozen=True, slots=True, kw_only=True, eq=False, repr=False)
-class Answer(SightLine):
+class Answer(Told):
     """A sight line and the terrain it was found on."""
 
     terrain: Terrain
@@ -118,6 +123,11 @@ def look(
     own_hill_m: float | None = None,
     ignore_near_m: float = 0.0,
     void_below_m: float = VOID_BELOW_M,
+    cover: CoverAlong | None = None,
+    frequency_hz: float | None = None,
+    rule: "Rule | None" = None,
+    sea_fraction: float = 0.0,
+    polarization: "Polarization" = "horizontal",
 ) -> Answer:
     """Whether one station sees another, with everything the record holds.
 
@@ -128,13 +138,23 @@ def look(
     eye, target : Station
         The observing end and the observed one.
     air : Air or None
-        Bending of the ray; None: light, kr 0.13.
+        Bending of the ray; None: light, kr 0.13, or with a frequency radio, ke 4/3.
     own_hill_m : float or None [m]
         Radius of a bare summit's own hill; None: the larger of 100 m and 3 cells.
     ignore_near_m : float [m]
         Ground this near to either end is not counted.
     void_below_m : float [m]
         A void that only higher ground could block counts as clear.
+    cover : function or None
+        Trees and buildings, from `cover_along`; None: bare ground.
+    frequency_hz : float or None [Hz]
+        Makes it a radio path: Fresnel zones, a clearance rule and the path sheet.
+    rule : RuleSet, sequence of Criterion, str, Path or None
+        Clearance rule: criteria, the name of a published set or a .toml file.
+    sea_fraction : float [1]
+        Share of the path over sea, for the diffraction loss.
+    polarization : str
+        "horizontal" or "vertical", for the diffraction loss.
 
     Returns
     -------
@@ -149,6 +169,8 @@ def look(
     DemError
         If a file is damaged; OutsideDemError if an end has no ground.
     """
+    if air is None and frequency_hz is not None:
+        air = Air(ke=KE_RADIO, assumed=True)
     line = judge(
         terrain,
         eye,
@@ -157,6 +179,23 @@ def look(
         own_hill_m=own_hill_m,
         ignore_near_m=ignore_near_m,
         void_below_m=void_below_m,
+        cover=cover,
     )
     values = {f.name: getattr(line, f.name) for f in fields(SightLine)}
-    return Answer(**values, terrain=terrain)
+    radio = None
+    if frequency_hz is not None:
+        # only a radio path needs that room
+        from profiler.radio.answer import RADIO_CAUTION, radio_answer
+
+        radio = radio_answer(
+            terrain,
+            line,
+            frequency_hz=frequency_hz,
+            rule=rule,
+            sea_fraction=sea_fraction,
+            polarization=polarization,
+        )
+        values["cautions"] = (*line.cautions, RADIO_CAUTION)
+        if radio is not None:
+            values["warnings"] = (*line.warnings, *radio.result.warnings)
+    return Answer(**values, terrain=terrain, radio=radio)

@@ -7,7 +7,8 @@ import numpy as np
 
 from profiler.earth import points_at
 from profiler.model import GeodesicPath, SightLine
-from profiler.output.record import DEG_DECIMALS, record
+from profiler.output.record import record
+from profiler.output.rounding import deg
 
 #: Vertices of the drawn path [1]; at 450 km the geodesic strays 10 m from the chords.
 PATH_VERTICES: Final = 129
@@ -85,4 +86,4 @@ def _line(path: GeodesicPath, start_m: float, end_m: float) -> Json:
 
 
 def _position(lon_deg: float, lat_deg: float) -> list[float]:
-    return [round(lon_deg, DEG_DECIMALS), round(lat_deg, DEG_DECIMALS)]
+    return [deg(lon_deg), deg(lat_deg)]

@@ -4,6 +4,7 @@ from typing import Any, Final
 
 from profiler.output.naming import capital, names_of
 from profiler.output.numbers import DOWN, Show, arcmin
+from profiler.output.standing import standing
 
 #: First word by verdict of the record.
 VERDICT_WORDS: Final = {
@@ -29,6 +30,12 @@ def first_line_parts(values: Json, show: Show) -> tuple[str, str]:
     tuple of two str
         Joined they are the first line.
     """
+    if "radio" in values:
+        from profiler.output.radio_words import radio_first_line  # only for radio
+
+        parts = radio_first_line(values, show)
+        if parts is not None:
+            return parts
     tell = {"blocked": _hidden, "undetermined": _cannot_say, "clear": _seen}
     head, tail = tell[values["verdict"]](values, show)
     return f"{VERDICT_WORDS[values['verdict']]}. {head}", tail
@@ -40,9 +47,10 @@ def _hidden(values: Json, show: Show) -> tuple[str, str]:
     what = name if values["target"]["height_m"] == 0.0 else f"the top of {name}"
     over = show.height(-at["margin_m"])
     where = show.distance(at["distance_m"])
+    there = standing(at)
     return (
         f"{capital(eye)} does not see {what}:",
-        f" ground at {where} stands {over} above the line.",
+        f" {there.name} at {where} {there.verb('stand')} {over} above the line.",
     )
 
 
@@ -82,10 +90,12 @@ def _part(values: Json, sees: str, show: Show) -> tuple[str, str]:
     target, rest = values["target"], values["horizon"]
     amount = show.height(target["visible_m"])
     whole, angle = show.given(target["height_m"]), arcmin(target["visible_arcmin"])
+    there = standing(rest)
+    it = "them" if there.is_plural else "it"
     return (
         f"{sees} the upper {amount} of {whole} ({angle});",
-        f" ground at {show.distance(rest['distance_m'])} hides the rest, the line "
-        f"passes it by {show.height(rest['margin_m'])}.",
+        f" {there.name} at {show.distance(rest['distance_m'])} {there.verb('hide')} "
+        f"the rest, the line passes {it} by {show.height(rest['margin_m'])}.",
     )
 
 
@@ -95,5 +105,6 @@ def _pass(values: Json, show: Show) -> str:
         return " The path has no ground that counts."
     where = show.distance(at["distance_m"])
     if values["grazing"]:
-        return f" The line grazes ground at {where}."
-    return f" The line passes ground at {where} by {show.height(at['margin_m'])}."
+        return f" The line grazes {standing(at).name} at {where}."
+    by = show.height(at["margin_m"])
+    return f" The line passes {standing(at).name} at {where} by {by}."

@@ -8,16 +8,14 @@ from typing import Any, Final
 from profiler.model.note import Note
 from profiler.model.terrain import DemKind
 from profiler.output.numbers import count, latitude, longitude, place, ratio
+from profiler.output.rounding import deg, metres
+from profiler.output.rounding import ratio as share
 from profiler.terrain.inspect import FileReport, Group, Spot
 
 #: Width of the lead words [characters]; the longest is "declare".
 LEAD: Final = 10
 #: Bytes in the units of file sizes [bytes], as planners count them (common practice).
 _BYTE_UNITS: Final = ((10**9, "GB"), (10**6, "MB"), (10**3, "kB"))
-#: Decimals of metres, degrees and shares in the record [1]; the contract of records.
-_METRE_DECIMALS: Final = 3
-_DEGREE_DECIMALS: Final = 9
-_SHARE_DECIMALS: Final = 6
 #: Formats by the raster library's name for them.
 _FORMATS: Final = {"GTiff": "GeoTIFF", "SRTMHGT": "HGT", "AAIGrid": "ASCII grid"}
 _VERTICAL: Final = {"m": "metres", "ft": "feet", "us-ft": "US survey feet"}
@@ -201,8 +199,8 @@ def inspection_record(report: FileReport) -> Json:
         "cols": report.cols,
         "step": list(report.step),
         "rotated": report.rotated,
-        "cell_m": report.cell_m and [_m(v) for v in report.cell_m],
-        "outline_deg": report.outline_deg and [_deg(v) for v in report.outline_deg],
+        "cell_m": report.cell_m and [metres(v) for v in report.cell_m],
+        "outline_deg": report.outline_deg and [deg(v) for v in report.outline_deg],
         "outline_crs": list(report.outline_crs),
         "registration": report.registration,
         "dtype": report.dtype,
@@ -231,22 +229,14 @@ def _posts_record(report: FileReport) -> Json:
     return {
         "posts": report.posts,
         "voids": report.voids,
-        "void_share": round(report.void_share, _SHARE_DECIMALS),
+        "void_share": share(report.void_share),
         "zeros": report.zeros,
-        "zero_share": round(report.zero_share, _SHARE_DECIMALS),
+        "zero_share": share(report.zero_share),
         "lowest": _spot(report.lowest, "height_m"),
         "highest": _spot(report.highest, "height_m"),
         "fillers": [_group(g, "raw") for g in report.fillers],
         "implausible": _group(report.implausible, "height_m"),
     }
-
-
-def _m(value: float) -> float:
-    return round(value, _METRE_DECIMALS)
-
-
-def _deg(value: float) -> float:
-    return round(value, _DEGREE_DECIMALS)
 
 
 def _raw(value: float | None) -> float | str | None:
@@ -257,14 +247,14 @@ def _raw(value: float | None) -> float | str | None:
 def _spot(spot: Spot | None, value: str) -> Json | None:
     if spot is None:
         return None
-    held = _m(spot.value) if value == "height_m" else _raw(spot.value)
+    held = metres(spot.value) if value == "height_m" else _raw(spot.value)
     lat, lon = spot.lat_deg, spot.lon_deg
     return {
         value: held,
         "row": spot.row,
         "col": spot.col,
-        "lat_deg": None if lat is None else _deg(lat),
-        "lon_deg": None if lon is None else _deg(_within(lon)),
+        "lat_deg": None if lat is None else deg(lat),
+        "lon_deg": None if lon is None else deg(_within(lon)),
     }
 
 

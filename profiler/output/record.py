@@ -21,13 +21,12 @@ from profiler.model import (
     Target,
     VoidStretch,
 )
+from profiler.output.rounding import M_DECIMALS, deg, metres, ratio
+from profiler.output.standing import cover_rows
+from profiler.output.told import radio_of
 
 #: Name and version of the record's form.
 SCHEMA: Final = "overbrow/profile/1"
-#: Decimals of metres, degrees and ratios.
-M_DECIMALS: Final = 3
-DEG_DECIMALS: Final = 9
-RATIO_DECIMALS: Final = 6
 #: Significant digits of a curvature [1/m].
 KAPPA_DIGITS: Final = 10
 
@@ -50,7 +49,7 @@ def record(line: SightLine) -> Json:
         "schema": SCHEMA,
         "verdict": line.verdict.value,
         "grazing": line.grazing,
-        "margin_m": _m(line.margin_m),
+        "margin_m": metres(line.margin_m),
         "decisive": _place(line.decisive),
         "first_block": _place(line.first_block),
         "horizon": _horizon(line.horizon),
@@ -59,28 +58,30 @@ def record(line: SightLine) -> Json:
         "target": _target(line.target),
         "needed": _needed(line),
         "path": {
-            "distance_m": _m(line.path.length_m),
-            "azimuth_deg": _deg(line.path.azimuth_deg),
-            "back_azimuth_deg": _deg(line.path.back_azimuth_deg),
+            "distance_m": metres(line.path.length_m),
+            "azimuth_deg": deg(line.path.azimuth_deg),
+            "back_azimuth_deg": deg(line.path.back_azimuth_deg),
             "samples": int(line.profile.dist_m.size),
             "void_samples": int(np.count_nonzero(np.isnan(line.profile.ground_m))),
         },
         "angles": {
-            "from_elevation_deg": _deg(line.from_elevation_deg),
-            "to_elevation_deg": _deg(line.to_elevation_deg),
+            "from_elevation_deg": deg(line.from_elevation_deg),
+            "to_elevation_deg": deg(line.to_elevation_deg),
         },
         "earth": _earth(line),
         "terrain": _terrain(line),
+        "cover": cover_rows(line.profile),
         "from": _end(line.from_),
         "to": _end(line.to),
         "other_ground": _other(line),
         "void": _void(line.void),
         "settings": {
-            "ignore_near_m": _m(line.ignore_near_m),
-            "void_below_m": _m(line.void_below_m),
-            "sea_level_m": _m(line.profile.sea_level_m),
-            "sea_filled_m": _m(line.profile.sea_filled_m),
+            "ignore_near_m": metres(line.ignore_near_m),
+            "void_below_m": metres(line.void_below_m),
+            "sea_level_m": metres(line.profile.sea_level_m),
+            "sea_filled_m": metres(line.profile.sea_filled_m),
         },
+        **_radio(line),
         "cautions": [_note(n) for n in line.cautions],
         "warnings": [_note(n) for n in line.warnings],
         "software": {"name": "overbrow", "version": VERSION},
@@ -93,67 +94,54 @@ def record_text(line: SightLine) -> str:
     return json.dumps(values, indent=1, ensure_ascii=False, allow_nan=False) + "\n"
 
 
-def _rounded(value: float | None, decimals: int) -> float | None:
-    # adding 0.0 turns -0.0, which a reader would take for a sign, into 0.0
-    return None if value is None else round(float(value), decimals) + 0.0
-
-
-def _m(value: float | None) -> float | None:
-    return _rounded(value, M_DECIMALS)
-
-
-def _deg(value: float) -> float:
-    return round(float(value), DEG_DECIMALS) + 0.0
-
-
-def _ratio(value: float | None) -> float | None:
-    return _rounded(value, RATIO_DECIMALS)
-
-
 def _place(place: Place | None) -> Json | None:
     return None if place is None else _place_fields(place)
 
 
 def _place_fields(place: Place) -> Json:
     return {
-        "distance_m": _m(place.distance_m),
-        "lat_deg": _deg(place.lat_deg),
-        "lon_deg": _deg(place.lon_deg),
-        "ground_m": _m(place.ground_m),
-        "cover_m": _m(place.cover_m),
-        "sight_m": _m(place.sight_m),
-        "margin_m": _m(place.margin_m),
+        "distance_m": metres(place.distance_m),
+        "lat_deg": deg(place.lat_deg),
+        "lon_deg": deg(place.lon_deg),
+        "ground_m": metres(place.ground_m),
+        "cover_m": metres(place.cover_m),
+        "cover_name": _text(place.cover_name),
+        "cover_kind": None if place.cover_kind is None else place.cover_kind.value,
+        "sight_m": metres(place.sight_m),
+        "margin_m": metres(place.margin_m),
     }
 
 
 def _horizon(place: Place | None) -> Json | None:
     if place is None:
         return None
-    return {**_place_fields(place), "elevation_deg": _deg(place.elevation_deg)}
+    return {**_place_fields(place), "elevation_deg": deg(place.elevation_deg)}
 
 
 def _stretch(stretch: Stretch) -> Json:
     return {
-        "start_m": _m(stretch.start_m),
-        "end_m": _m(stretch.end_m),
-        "worst_margin_m": _m(stretch.worst_margin_m),
-        "worst_at_m": _m(stretch.worst_at_m),
-        "lat_deg": _deg(stretch.lat_deg),
-        "lon_deg": _deg(stretch.lon_deg),
+        "start_m": metres(stretch.start_m),
+        "end_m": metres(stretch.end_m),
+        "worst_margin_m": metres(stretch.worst_margin_m),
+        "worst_at_m": metres(stretch.worst_at_m),
+        "lat_deg": deg(stretch.lat_deg),
+        "lon_deg": deg(stretch.lon_deg),
+        "cover_name": _text(stretch.cover_name),
+        "cover_kind": None if stretch.cover_kind is None else stretch.cover_kind.value,
     }
 
 
 def _target(target: Target) -> Json:
     return {
-        "height_m": _m(target.height_m),
+        "height_m": metres(target.height_m),
         "shown": target.shown.value,
-        "visible_m": _m(target.visible_m),
-        "hidden_m": _m(target.hidden_m),
-        "visible_fraction": _ratio(target.visible_fraction),
-        "visible_arcmin": _m(target.visible_arcmin),
-        "above_crest_m": _m(target.above_crest_m),
-        "own_hill_m": _m(target.own_hill_m),
-        "aim_moved_m": _m(target.aim_moved_m),
+        "visible_m": metres(target.visible_m),
+        "hidden_m": metres(target.hidden_m),
+        "visible_fraction": ratio(target.visible_fraction),
+        "visible_arcmin": metres(target.visible_arcmin),
+        "above_crest_m": metres(target.above_crest_m),
+        "own_hill_m": metres(target.own_hill_m),
+        "aim_moved_m": metres(target.aim_moved_m),
         "point_shown": target.point_shown.value,
     }
 
@@ -161,12 +149,12 @@ def _target(target: Target) -> Json:
 def _needed(line: SightLine) -> Json:
     needed = line.needed
     return {
-        "from_agl_m": _m(needed.from_agl_m),
-        "to_agl_m": _m(needed.to_agl_m),
-        "both_extra_m": _m(needed.both_extra_m),
-        "ke": _ratio(needed.ke),
-        "kr": _ratio(needed.kr),
-        "dem_bias_m": _m(needed.dem_bias_m),
+        "from_agl_m": metres(needed.from_agl_m),
+        "to_agl_m": metres(needed.to_agl_m),
+        "both_extra_m": metres(needed.both_extra_m),
+        "ke": ratio(needed.ke),
+        "kr": ratio(needed.kr),
+        "dem_bias_m": metres(needed.dem_bias_m),
         "from_stretch": needed.from_stretch,
         "to_stretch": needed.to_stretch,
         "both_stretch": needed.both_stretch,
@@ -176,11 +164,11 @@ def _needed(line: SightLine) -> Json:
 def _earth(line: SightLine) -> Json:
     earth = line.earth
     return {
-        "ke": _ratio(earth.ke),
-        "kr": _ratio(earth.kr),
+        "ke": ratio(earth.ke),
+        "kr": ratio(earth.kr),
         "kappa_per_m": float(f"{earth.kappa_per_m:.{KAPPA_DIGITS}g}") + 0.0,
-        "radius_m": _m(earth.radius_m),
-        "effective_radius_m": _m(earth.effective_radius_m),
+        "radius_m": metres(earth.radius_m),
+        "effective_radius_m": metres(earth.effective_radius_m),
         "stated": earth.stated,
         "is_default": earth.is_default,
     }
@@ -196,7 +184,7 @@ def _terrain(line: SightLine) -> Json:
                 "bytes": f.bytes,
                 "sha256": f.sha256,
                 "crs": f.crs,
-                "cell_m": [_m(side) for side in f.cell_m],
+                "cell_m": [metres(side) for side in f.cell_m],
             }
             for f in profile.files
         ],
@@ -210,12 +198,12 @@ def _terrain(line: SightLine) -> Json:
 def _end(end: EndReport) -> Json:
     return {
         "name": _text(end.name),
-        "lat_deg": _deg(end.lat_deg),
-        "lon_deg": _deg(end.lon_deg),
-        "ground_m": _m(end.ground_m),
-        "agl_m": _m(end.agl_m),
-        "amsl_m": _m(end.amsl_m),
-        "dem_ground_m": _m(end.dem_ground_m),
+        "lat_deg": deg(end.lat_deg),
+        "lon_deg": deg(end.lon_deg),
+        "ground_m": metres(end.ground_m),
+        "agl_m": metres(end.agl_m),
+        "amsl_m": metres(end.amsl_m),
+        "dem_ground_m": metres(end.dem_ground_m),
         "ground_from": end.ground_from,
     }
 
@@ -226,10 +214,10 @@ def _other(line: SightLine) -> Json | None:
         return None
     return {
         "verdict": other.verdict.value,
-        "margin_m": _m(other.margin_m),
+        "margin_m": metres(other.margin_m),
         "shown": other.shown.value,
-        "from_ground_m": _m(other.from_ground_m),
-        "to_ground_m": _m(other.to_ground_m),
+        "from_ground_m": metres(other.from_ground_m),
+        "to_ground_m": metres(other.to_ground_m),
     }
 
 
@@ -237,10 +225,10 @@ def _void(void: VoidStretch | None) -> Json | None:
     if void is None:
         return None
     return {
-        "start_m": _m(void.start_m),
-        "end_m": _m(void.end_m),
-        "lat_deg": _deg(void.lat_deg),
-        "lon_deg": _deg(void.lon_deg),
+        "start_m": metres(void.start_m),
+        "end_m": metres(void.end_m),
+        "lat_deg": deg(void.lat_deg),
+        "lon_deg": deg(void.lon_deg),
         # ground that would block is rounded down: the safe side
         "blocks_above_m": math.floor(void.blocks_above_m * 10**M_DECIMALS)
         / 10**M_DECIMALS,
@@ -254,3 +242,13 @@ def _note(note: Note) -> Json:
 def _text(text: str) -> str:
     """Text that UTF-8 can hold; a name on disk may be bytes in no encoding."""
     return text.encode("utf-8", errors="replace").decode("utf-8")
+
+
+def _radio(line: SightLine) -> Json:
+    """The radio part, only where a frequency was given."""
+    radio = radio_of(line)
+    if radio is None:
+        return {}
+    from profiler.output.radio_record import radio_record  # only for a radio path
+
+    return {"radio": radio_record(radio)}

@@ -20,6 +20,7 @@ from profiler.output.numbers import (
     ratio,
 )
 from profiler.output.record import record
+from profiler.output.standing import standing
 
 #: Width of the lead words [characters].
 LEAD: Final = 13
@@ -59,15 +60,39 @@ def words(line: SightLine, *, show_in: str = "m", assumed: Collection[str] = ())
         _path(values, show),
         "",
         *_led("in the way", _in_the_way(values, show)),
-        *_led("shown", _shown(values, show)),
+        *_radio_lines(values, show),
+        *_led("shown", [] if "radio" in values else _shown(values, show)),
         *_would_change(values, show),
         *_led("left out", _left_out(values, show)),
         *_led("DEM alone", _other_ground(values, show)),
         *_led("check", _check(values, show)),
         *_led("careful", _careful(values)),
-        "Judged for light.",
+        _judged_for(values),
     ]
     return "\n".join(lines) + "\n"
+
+
+def _radio_lines(values: Json, show: Show) -> list[str]:
+    """Rule, tight places and the path sheet of a radio path."""
+    if "radio" not in values:
+        return []
+    from profiler.output import radio_words as radio  # only for a radio path
+
+    return [
+        *_led("rule", radio.rule_lines(values, show)),
+        *_led("tight", radio.tight_lines(values, show)),
+        *_led("pointing", radio.pointing_lines(values, show)),
+        *_led("ground", radio.ground_lines(values, show)),
+        *_led("loss", radio.loss_lines(values)),
+    ]
+
+
+def _judged_for(values: Json) -> str:
+    if "radio" not in values:
+        return "Judged for light. For a radio path add --frequency."
+    from profiler.output.radio_words import frequency_text  # only for a radio path
+
+    return f"Judged for radio at {frequency_text(values['radio']['frequency_hz'])}."
 
 
 def headline(line: SightLine, *, show_in: str = "m") -> tuple[str, str]:
@@ -96,7 +121,8 @@ def _air_and_ground(values: Json) -> str:
     both = f"{ke} = {kr}" if earth["stated"].startswith("ke") else f"{kr} = {ke}"
     if earth["stated"].startswith("dN"):
         both = f"{earth['stated']}, {both}"
-    how = "light, " + both + " (default)" if earth["is_default"] else both + " (given)"
+    wave = "radio" if "radio" in values else "light"
+    how = f"{wave}, {both} (default)" if earth["is_default"] else f"{both} (given)"
     kind = {
         "bare": "bare ground",
         "surface": "surface model",
@@ -176,11 +202,13 @@ def _in_the_way(values: Json, show: Show) -> list[str]:
         return []
     decides = _number_at(values, values["decisive"]["distance_m"])
     listed = _listed(stretches)
+    is_covered = any(s["cover_name"] for _, s in listed)
     rows = [
         [
             f"{number}  {show.bare_distance(s['start_m'])}-{show.distance(s['end_m'])}",
             f"{show.height(-s['worst_margin_m'])} at {show.distance(s['worst_at_m'])}",
             f"{latitude(s['lat_deg'])}  {longitude(s['lon_deg'])}",
+            *([standing(s).name] if is_covered else []),
             "decides" if number == decides else "",
         ]
         for number, s in listed
@@ -228,7 +256,8 @@ def _shown_blocked(values: Json, show: Show) -> str:
     height = target["height_m"]
     what = f"none of {show.given(height)}" if height > 0.0 else "nothing"
     number = _number_at(values, horizon["distance_m"])
-    past = f"the ground at {show.distance(horizon['distance_m'])}"
+    there = standing(horizon).name
+    past = f"the {there} at {show.distance(horizon['distance_m'])}"
     over = show.height(-target["above_crest_m"])
     where = "the top" if height > 0.0 else "it"
     return (
@@ -262,7 +291,8 @@ def _shown_clear(values: Json, show: Show) -> list[str]:
 def _would_change(values: Json, show: Show) -> list[str]:
     if values["verdict"] == "blocked":
         return _led("would open", openers(values, show))
-    if values["verdict"] == "undetermined":
+    # a radio path's heights must meet its rule, not merely see
+    if values["verdict"] == "undetermined" or "radio" in values:
         return []
     return [
         *_led("would close", closers(values, show)),

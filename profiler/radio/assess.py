@@ -209,7 +209,7 @@ def _result(
 def _tight_place(line: SightLine, there: Line, at: Tight, index: int) -> TightPlace:
     dist, ground = float(at.dist_m[index]), float(at.ground_m[index])
     return TightPlace(
-        place=place_at(line.path, there, dist, ground),
+        place=place_at(line.path, there, dist, ground, profile=line.profile),
         f1_m=float(at.f1_m[index]),
         share=float(at.share[index]),
     )

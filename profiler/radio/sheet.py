@@ -21,6 +21,7 @@ from profiler.radio.delta_bullington import (
     diffraction_loss,
     effective_heights_m,
 )
+from profiler.radio.first_term import Polarization
 from profiler.radio.spherical import horizon_reach_m, smooth_clearance
 from profiler.radio.tight import tight_places
 from profiler.radio.waves import free_space_loss_db
@@ -115,7 +116,7 @@ def raw_profile(line: SightLine) -> tuple[FloatArray, FloatArray] | None:
 
     Where the ground steps the higher side is kept. The ends are ground in use.
     """
-    dist, height = line.profile.dist_m, line.profile.ground_m
+    dist, height = line.profile.dist_m, line.profile.top_m
     ends = line.from_.ground_m, line.to.ground_m
     if np.any(np.isnan(height)) or ends[0] is None or ends[1] is None:
         return None
@@ -179,7 +180,7 @@ def _at_ke(line: SightLine, ke: float, wave_m: float) -> CriterionResult:
 def _tight(
     line: SightLine, there: Line, dist_m: float, ground_m: float, wave_m: float
 ) -> TightPlace:
-    place = place_at(line.path, there, dist_m, ground_m)
+    place = place_at(line.path, there, dist_m, ground_m, profile=line.profile)
     length = line.path.length_m
     f1 = math.sqrt(wave_m * dist_m * (length - dist_m) / length)
     return TightPlace(place=place, f1_m=f1, share=place.margin_m / f1)

@@ -192,9 +192,8 @@ def _cut(profile: PathProfile, spans: tuple[CoverSpan, ...]) -> _Parts:
     for k, mask in ((0, head), (1, head & last), (2, last)):
         at[mask, k], height[mask, k] = dist[owner, k][mask], ground[owner, k][mask]
         source[mask, k] = profile.source[whole[owner, k]][mask]
-    stepped = np.diff(profile.piece_start) != 2
-    between = owner[1:] != owner[:-1]
-    step = between & np.append(stepped, False)[owner[:-1]]
+    left, right = height[:-1, 2], height[1:, 0]
+    step = (left != right) & np.isfinite(left) & np.isfinite(right)
     return _Parts(at, height, source, step)
 
 

@@ -1,6 +1,7 @@
 """Where cover comes from: one height everywhere, outlines, a raster of heights."""
 
 from collections.abc import Callable, Sequence
+from dataclasses import replace
 
 import numpy as np
 
@@ -13,9 +14,10 @@ from profiler.model import (
     GeodesicPath,
     Note,
     PathCover,
+    PathProfile,
 )
 from profiler.shapes import CoverShape, spans_along
-from profiler.sight.cover import canopy, grown
+from profiler.sight.cover import canopy, covered, grown
 from profiler.terrain import Terrain, sample_path
 
 CoverAlong = Callable[[GeodesicPath], PathCover]
@@ -81,6 +83,31 @@ def cover_along(
         return PathCover(spans=later, notes=tuple(said))
 
     return along
+
+
+def with_cover(
+    profile: PathProfile, path: GeodesicPath, cover: CoverAlong | None
+) -> PathProfile:
+    """A path's profile with what its cover gives, and says.
+
+    Parameters
+    ----------
+    profile : PathProfile
+    path : GeodesicPath
+        The same path.
+    cover : function or None
+        From `cover_along`; None: no cover.
+
+    Raises
+    ------
+    InputError
+        If the cover cannot be used.
+    """
+    if cover is None:
+        return profile
+    found = cover(path)
+    noted = replace(profile, notes=(*profile.notes, *found.notes))
+    return covered(noted, found.spans)
 
 
 def _check_cells(raster: Terrain) -> None:

@@ -10,6 +10,46 @@ from profiler.terrain.near import rise_over_ring
 CANOPY_FROM_M = 3.0
 
 
+def foot_notes(
+    terrain: Terrain,
+    profile: PathProfile,
+    stations: tuple[Station, Station],
+    ends: tuple[EndReport, EndReport],
+    *,
+    ignore_near_m: float,
+) -> tuple[Note, ...]:
+    """Every note on cover over and under the two stations.
+
+    Parameters
+    ----------
+    terrain : Terrain
+    profile : PathProfile
+        Ground and cover along the path.
+    stations : tuple of two Station
+        As asked for.
+    ends : tuple of two EndReport
+        As used.
+    ignore_near_m : float [m]
+        Ground and cover this near to an end are not counted.
+
+    Raises
+    ------
+    DemError
+        If a file is damaged.
+    """
+    notes = [
+        *under_cover_notes(profile, ends, ignore_near_m),
+        *under_mast_notes(terrain, stations, ends),
+    ]
+    if profile.cover_spans and profile.dem_kind is DemKind.SURFACE:
+        text = (
+            "A surface model has trees and buildings in it already; cover added on it "
+            "counts them twice. Use bare ground with it, or leave the cover out."
+        )
+        notes.append(Note(code="cover-on-surface", text=text))
+    return tuple(notes)
+
+
 def under_cover_notes(
     profile: PathProfile, ends: tuple[EndReport, EndReport], ignore_near_m: float
 ) -> tuple[Note, ...]:
@@ -48,7 +88,9 @@ def _span_at(profile: PathProfile, sample: int) -> CoverSpan | None:
 
 
 def under_mast_notes(
-    terrain: Terrain, stations: tuple[Station, Station], ends: tuple[EndReport, ...]
+    terrain: Terrain,
+    stations: tuple[Station, Station],
+    ends: tuple[EndReport, EndReport],
 ) -> tuple[Note, ...]:
     """A note for each end whose ground on a surface model may be tree tops.
 

@@ -1,6 +1,7 @@
 """The one computation: from a question to the sight line and what it means."""
 
 import math
+from dataclasses import replace
 from typing import NamedTuple
 
 import numpy as np
@@ -26,13 +27,15 @@ from profiler.model import (
     VoidStretch,
 )
 from profiler.sight.case import QUARTER_TURN, Case, Look, look_at
+from profiler.sight.cover_sources import CoverAlong, with_cover
 from profiler.sight.ends import end_report
+from profiler.sight.feet import foot_notes
 from profiler.sight.ground import ground_of, joined, with_ends
 from profiler.sight.line import blocked_runs, decisive
 from profiler.sight.needed import needed
 from profiler.sight.notes import cautions_for, warnings_for
 from profiler.sight.outside import check_inside
-from profiler.sight.own_hill import own_hill_radius
+from profiler.sight.own_hill import own_hill_radius, stands_bare
 from profiler.sight.places import place_at, stretch_of, void_stretches
 from profiler.sight.target import shown_target
 from profiler.sight.view import front_crest_index, horizon_index, is_seen, rays
@@ -61,6 +64,7 @@ def judge(
     own_hill_m: float | None = None,
     ignore_near_m: float = 0.0,
     void_below_m: float = VOID_BELOW_M,
+    cover: CoverAlong | None = None,
 ) -> SightLine:
     """Whether one station sees another over a terrain, and what decides it.
 
@@ -77,6 +81,8 @@ def judge(
         Ground this near to either end is not counted.
     void_below_m : float [m]
         A void that only higher ground could block counts as clear.
+    cover : function or None
+        Trees and buildings, from `cover_along`; None: bare ground.
 
     Returns
     -------
@@ -94,7 +100,7 @@ def judge(
     check_inside(terrain, target, role="to")
     path = geodesic_path(eye.point, target.point)
     _check_lengths(path, ignore_near_m, own_hill_m)
-    profile = sample_path(terrain, path)
+    profile = with_cover(sample_path(terrain, path), path, cover)
     _check_cell(profile, path)
     earth = bend(air or Air(), path.radius_m)
     _check_bending(earth, path)
@@ -102,6 +108,11 @@ def judge(
     hill_m = 0.0
     if ends[1].agl_m == 0.0:
         hill_m = own_hill_radius(terrain, path, own_hill_m)
+        hill_m = hill_m if stands_bare(profile, hill_m) else 0.0
+    feet = foot_notes(
+        terrain, profile, (eye, target), ends, ignore_near_m=ignore_near_m
+    )
+    profile = replace(profile, notes=profile.notes + feet)
     case = _case(path, profile, earth, ends, hill_m=hill_m, near_m=ignore_near_m)
     ready = _look(path, profile, earth, ends, case, void_below_m)
     other = None
@@ -218,7 +229,7 @@ def _look(
     look = look_at(case)
     voids = [
         v
-        for v in void_stretches(path, look.line, look.void)
+        for v in void_stretches(path, look.line, look.void, profile=profile)
         if v.blocks_above_m < void_below_m
     ]
     lowest = min(voids, key=lambda v: v.blocks_above_m, default=None)
@@ -278,7 +289,7 @@ def _spot(ready: _Ready, index: int | None) -> Place | None:
         return None
     at = ready.look.at
     dist, ground = float(at.dist_m[index]), float(at.ground_m[index])
-    return place_at(ready.path, ready.look.line, dist, ground)
+    return place_at(ready.path, ready.look.line, dist, ground, profile=ready.profile)
 
 
 def _seen_place(ready: _Ready, index: int | None) -> Place | None:
@@ -286,14 +297,17 @@ def _seen_place(ready: _Ready, index: int | None) -> Place | None:
         return None
     seen = ready.look.seen
     dist, ground = float(seen.dist_m[index]), float(seen.ground_m[index])
-    return place_at(ready.path, ready.look.line, dist, ground)
+    return place_at(ready.path, ready.look.line, dist, ground, profile=ready.profile)
 
 
 def _stretches(ready: _Ready) -> tuple[Stretch, ...]:
     if not ready.look.is_blocked:
         return ()
     runs = blocked_runs(ready.look.line, ready.look.known, ready.look.at)
-    return tuple(stretch_of(ready.path, ready.look.at, run) for run in runs)
+    return tuple(
+        stretch_of(ready.path, ready.look.at, run, profile=ready.profile)
+        for run in runs
+    )
 
 
 def _first_block(ready: _Ready) -> int | None:
@@ -351,7 +365,7 @@ def _answer(ready: _Ready, other: OtherGround | None, void_below_m: float) -> Si
         other_ground=other,
         profile=ready.profile,
         sight_m=along,
-        margin_along_m=along - ready.profile.ground_m,
+        margin_along_m=along - ready.profile.top_m,
         ground_seen=_ground_seen(ready),
         aim_distance_m=line.length_m,
         aim_m=line.aim_m,

@@ -77,6 +77,8 @@ def cautions_for(
     counted = "Ground only: no trees, buildings or weather."
     if profile.dem_kind is DemKind.SURFACE:
         counted = "Trees and buildings as the surface model has them; no weather."
+    elif profile.cover_spans:
+        counted = "Ground, and the trees and buildings given; no others, no weather."
     text = (
         f"{counted} Check on site before you build, climb or decide; local codes and "
         "licensed practice rule."

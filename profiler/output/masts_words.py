@@ -1,0 +1,116 @@
+"""Antenna heights in plain words; every number is the masts' record's."""
+
+from typing import Any, Final
+
+from profiler.output.naming import capital, names_of
+from profiler.output.numbers import Show, ratio
+from profiler.output.radio_words import criterion_text, frequency_text
+
+#: From this height on marking, lighting and registration rules may apply [m]; 200 ft,
+#: 47 CFR 17.7.
+MARKED_FROM_M: Final = 60.96
+MASTS_CAUTION: Final = (
+    "Above 60.96 m (200 ft) and near airfields marking, lighting and registration rules "
+    "may apply; structure, climbing and RF exposure are for licensed practice and local "
+    "codes."
+)
+#: Points of the trade-off told in words [1]; all are in the record.
+TOLD: Final = 6
+#: Width of the lead words [characters].
+LEAD: Final = 13
+
+Json = dict[str, Any]
+
+
+def masts_words(values: Json, *, show_in: str = "m") -> str:
+    """A masts' record as a person reads it, several lines, one final newline.
+
+    Parameters
+    ----------
+    values : dict
+        From `masts_record`.
+    show_in : str
+        "m" or "ft".
+
+    Raises
+    ------
+    InputError
+        If ``show_in`` is no such unit.
+    """
+    show = Show(unit=show_in, path_m=values["path"]["distance_m"])
+    eye, name = names_of(values)
+    rows = [
+        ("", first_masts_line(values, show)),
+        ("path", f"{show.length(values['path']['distance_m'])} from {eye} to {name}"),
+        *(("rule" if k == 0 else "", t) for k, t in enumerate(_rule(values, show))),
+        *_given(values, show),
+        *_cheapest(values, show),
+        *(("trade-off" if k == 0 else "", t) for k, t in enumerate(_curve(values, show))),
+        ("careful", MASTS_CAUTION),
+    ]
+    lines = [text if not lead and k == 0 else f"{lead:<{LEAD}}{text}" for k, (lead, text) in enumerate(rows)]
+    return "\n".join(lines) + "\n"
+
+
+def first_masts_line(values: Json, show: Show) -> str:
+    """The equal heights and what governs them."""
+    radio = frequency_text(values["frequency_hz"])
+    if values["equal_agl_m"] is None:
+        return f"No equal heights within the limits meet the rule at {radio}."
+    height = show.height(values["equal_agl_m"], rounding="up")
+    governs = ""
+    if values["from_agl_m"] is None and values["to_agl_m"] is None:
+        governs = f"; {criterion_text(values['governing'])} governs"
+    return f"Equal antenna heights of {height} meet the rule at {radio}{governs}."
+
+
+def _rule(values: Json, show: Show) -> list[str]:
+    lines = []
+    for criterion in values["criteria"]:
+        left = criterion["margin_m"]
+        told = "" if left is None else f"   leaves {show.height(left, rounding='down')}"
+        lines.append(f"{criterion_text(criterion)}{told}")
+    at = values["margins_at"]
+    if at is not None:
+        near, far = (show.height(at[k]) for k in ("from_agl_m", "to_agl_m"))
+        lines.append(f"at {near} and {far} above ground")
+    return lines
+
+
+def _given(values: Json, show: Show) -> list[tuple[str, str]]:
+    eye, name = names_of(values)
+    rows = []
+    if values["from_agl_m"] is not None:
+        height = show.height(values["from_agl_m"], rounding="up")
+        rows.append(("least", f"{capital(eye)} at {height} for the given {name}"))
+    if values["to_agl_m"] is not None:
+        height = show.height(values["to_agl_m"], rounding="up")
+        rows.append(("least", f"{capital(name)} at {height} for the given {eye}"))
+    return rows
+
+
+def _cheapest(values: Json, show: Show) -> list[tuple[str, str]]:
+    eye, name = names_of(values)
+    pair = values["cheapest"]
+    if pair is None:
+        return [("cheapest", "no pair within the limits meets the rule")]
+    near, far = (show.height(pair[k]) for k in ("from_agl_m", "to_agl_m"))
+    text = (
+        f"{capital(eye)} at {near}, {name} at {far}: cost {ratio(pair['cost'])}; "
+        f"{criterion_text(pair['governing'])} governs"
+    )
+    tall = max(pair["from_agl_m"], pair["to_agl_m"]) > MARKED_FROM_M
+    rows = [("cheapest", text)]
+    if tall:
+        rows.append(("", "one mast is above 60.96 m (200 ft)"))
+    return rows
+
+
+def _curve(values: Json, show: Show) -> list[str]:
+    curve = values["curve"]
+    step = max(1, (len(curve) - 1) // (TOLD - 1))
+    return [
+        f"{show.height(p['from_agl_m'])} and {show.height(p['to_agl_m'])}   "
+        f"{criterion_text(p['governing'])}"
+        for p in curve[::step]
+    ]

@@ -1,0 +1,83 @@
+"""Antenna heights for an answer's path."""
+
+from profiler.errors import InputError
+from profiler.model import SightLine
+from profiler.radio.answer import Rule, rule_for
+from profiler.radio.assess import counted_ground
+from profiler.radio.bench import Bench, bench_for
+from profiler.radio.criteria import RuleSet
+from profiler.radio.masts import MastLimits, MastPlan, plan_masts
+from profiler.radio.waves import wavelength_m
+
+
+def antenna_heights(
+    line: SightLine,
+    *,
+    frequency_hz: float,
+    rule: Rule,
+    near: MastLimits | None = None,
+    far: MastLimits | None = None,
+    given_from_agl_m: float | None = None,
+    given_to_agl_m: float | None = None,
+) -> tuple[MastPlan, RuleSet]:
+    """Least, equal and cheapest antenna heights that meet every criterion of a rule.
+
+    Parameters
+    ----------
+    line : SightLine
+        The path; its own heights and air are not used.
+    frequency_hz : float [Hz]
+    rule : RuleSet, sequence of Criterion, str or Path
+    near, far : MastLimits or None
+        What can be built at the two ends.
+    given_from_agl_m, given_to_agl_m : float or None [m]
+        A height at one end for which the least one at the other is wanted.
+
+    Returns
+    -------
+    MastPlan, RuleSet
+        Heights above ground, rounded up and tried along the whole path; the rule.
+
+    Raises
+    ------
+    InputError
+        If ground at an end or between is unknown, or rule or limits cannot be used.
+    """
+    made = rule_for(rule, line, frequency_hz)
+    plan = plan_masts(
+        path_bench(line, frequency_hz=frequency_hz, rule=made),
+        near=near,
+        far=far,
+        given_from_agl_m=given_from_agl_m,
+        given_to_agl_m=given_to_agl_m,
+    )
+    return plan, made
+
+
+def path_bench(line: SightLine, *, frequency_hz: float, rule: RuleSet) -> Bench:
+    """An answer's path prepared for trying heights.
+
+    Raises
+    ------
+    InputError
+        If ground at an end or between is unknown.
+    """
+    grounds = line.from_.ground_m, line.to.ground_m
+    if grounds[0] is None or grounds[1] is None:
+        msg = "An antenna height needs ground at both ends; give --from-ground, --to-ground."
+        raise InputError(msg)
+    if line.void is not None:
+        msg = (
+            f"{line.void.end_m - line.void.start_m:.0f} m of the path have no known "
+            "ground: no height can be named. Add elevation files or --sea-level."
+        )
+        raise InputError(msg)
+    return bench_for(
+        counted_ground(line),
+        length_m=line.path.length_m,
+        from_ground_m=grounds[0],
+        to_ground_m=grounds[1],
+        criteria=rule.criteria,
+        wavelength_m=wavelength_m(frequency_hz),
+        radius_m=line.path.radius_m,
+    )
