@@ -14,6 +14,8 @@ from profiler.constants import VERSION
 #: Sub-commands: module and name of the command in it, imported when called.
 COMMANDS: Final = {
     "profile": ("profiler.cli.profile", "profile_command"),
+    "masts": ("profiler.cli.masts", "masts_command"),
+    "diffraction": ("profiler.cli.diffraction", "diffraction_command"),
     "inspect": ("profiler.cli.inspect", "inspect_command"),
     "demo": ("profiler.cli.demo", "demo_command"),
 }

@@ -13,10 +13,13 @@ Decorator = Callable[[Callable[..., None]], Callable[..., None]]
 
 
 def option(section: str, *names: str, **settings: Any) -> Decorator:
+    """An option in one section of a command's help."""
     return click.option(*names, cls=SectionOption, section=section, **settings)
 
 
 def stacked(decorators: list[Decorator]) -> Decorator:
+    """Several options as one decorator, listed in their order."""
+
     def decorate(function: Callable[..., None]) -> Callable[..., None]:
         for decorator in reversed(decorators):
             function = decorator(function)

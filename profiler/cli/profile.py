@@ -2,7 +2,7 @@
 
 from collections.abc import Callable
 from pathlib import Path
-from typing import Any, Final
+from typing import TYPE_CHECKING, Any, Final
 
 import click
 
@@ -30,12 +30,15 @@ from profiler.cli.question import (
 )
 from profiler.cli.sections import SectionCommand
 from profiler.errors import InputError
-from profiler.model import Verdict
+from profiler.model import Air, Verdict
 from profiler.output.answer import Answer, look
 from profiler.output.exchange import geojson_text
 from profiler.output.files import write_text
 from profiler.output.record import record_text
 from profiler.output.words import words
+
+if TYPE_CHECKING:
+    from profiler.radio.answer import Rule
 
 #: Exit status by verdict with --exit-code; the contract of docs/commands.md.
 EXIT_BY_VERDICT: Final = {
@@ -82,9 +85,30 @@ def answer_to(options: Options) -> Answer:
     check_heights(options)
     rule = rule_from(options)
     check_radio_heights(options)
-    air, own_hill = air_from(options), own_hill_from(options)
+    return path_answer(
+        options, air_from(options), frequency_hz=options["frequency"], rule=rule
+    )
+
+
+def path_answer(
+    options: Options,
+    air: Air,
+    *,
+    frequency_hz: float | None = None,
+    rule: "Rule | None" = None,
+) -> Answer:
+    """The answer for the path that the options name, in one state of the air.
+
+    Raises
+    ------
+    click.UsageError
+        If no elevation file is named.
+    ProfilerError
+        If an input or an elevation file cannot be used.
+    """
+    own_hill = own_hill_from(options)
     check_targets(options)
-    check_figure_name(options["figure"])
+    check_figure_name(options.get("figure"))
     places = Places(options)
     if not options["dem"]:
         msg = (
@@ -104,7 +128,7 @@ def answer_to(options: Options) -> Answer:
         own_hill_m=own_hill,
         ignore_near_m=options["ignore_near"],
         void_below_m=options["void_below"],
-        frequency_hz=options["frequency"],
+        frequency_hz=frequency_hz,
         rule=rule,
     )
 
@@ -138,14 +162,14 @@ def tell(answer: Answer, options: Options) -> None:
     else:
         click.echo(words_for(answer, options), nl=False)
     if options["json_file"] not in (None, "-"):
-        _wrote(options["json_file"], lambda p: write_text(p, record_text(answer)))
+        wrote(options["json_file"], lambda p: write_text(p, record_text(answer)))
     if options["geojson"] is not None:
-        _wrote(options["geojson"], lambda p: write_text(p, geojson_text(answer)))
+        wrote(options["geojson"], lambda p: write_text(p, geojson_text(answer)))
     if options["figure"] is not None:
         from profiler.output.figure import save_figure  # matplotlib: 0.6 s
 
         figure = answer.figure(draw=options["draw"], show_in=options["show_in"])
-        _wrote(options["figure"], lambda p: save_figure(figure, p))
+        wrote(options["figure"], lambda p: save_figure(figure, p))
     elif options["json_file"] is None:
         click.echo(next_step(answer), err=True)
 
@@ -158,6 +182,7 @@ def next_step(answer: Answer) -> str:
     return "Next: add --figure profile.png to see it drawn."
 
 
-def _wrote(name: str, write: Callable[[Path], None]) -> None:
+def wrote(name: str, write: Callable[[Path], None]) -> None:
+    """Write one result and name it on stderr."""
     write(Path(name))
     click.echo(f"Wrote {name}", err=True)

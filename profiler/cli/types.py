@@ -6,6 +6,7 @@ from typing import TYPE_CHECKING, Any, Final
 import click
 from click.core import ParameterSource
 
+from profiler.cli.characters import number_from
 from profiler.cli.points import EastingNorthing, LatLon, SiteName, parse_point
 from profiler.cli.quantities import (
     parse_height,
@@ -122,3 +123,5 @@ class RadioType(_AnyParam):
 FREQUENCY: Final = RadioType("frequency", "parse_frequency")
 #: "ke=4/3 f1=0.6 extra=3m"; a Criterion.
 CRITERION: Final = RadioType("criterion", "parse_criterion")
+#: 1.6; a plain number.
+NUMBER: Final = QuantityType("number", number_from)

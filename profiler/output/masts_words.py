@@ -10,9 +10,9 @@ from profiler.output.radio_words import criterion_text, frequency_text
 #: 47 CFR 17.7.
 MARKED_FROM_M: Final = 60.96
 MASTS_CAUTION: Final = (
-    "Above 60.96 m (200 ft) and near airfields marking, lighting and registration rules "
-    "may apply; structure, climbing and RF exposure are for licensed practice and local "
-    "codes."
+    "Above 60.96 m (200 ft) and near airfields marking, lighting and registration "
+    "rules may apply; structure, climbing and RF exposure are for licensed practice "
+    "and local codes."
 )
 #: Points of the trade-off told in words [1]; all are in the record.
 TOLD: Final = 6
@@ -40,16 +40,21 @@ def masts_words(values: Json, *, show_in: str = "m") -> str:
     show = Show(unit=show_in, path_m=values["path"]["distance_m"])
     eye, name = names_of(values)
     rows = [
-        ("", first_masts_line(values, show)),
         ("path", f"{show.length(values['path']['distance_m'])} from {eye} to {name}"),
-        *(("rule" if k == 0 else "", t) for k, t in enumerate(_rule(values, show))),
+        *_led("rule", _rule(values, show)),
         *_given(values, show),
         *_cheapest(values, show),
-        *(("trade-off" if k == 0 else "", t) for k, t in enumerate(_curve(values, show))),
+        *_led("trade-off", _curve(values, show)),
         ("careful", MASTS_CAUTION),
     ]
-    lines = [text if not lead and k == 0 else f"{lead:<{LEAD}}{text}" for k, (lead, text) in enumerate(rows)]
+    first = first_masts_line(values, show)
+    lines = [first, *(f"{lead:<{LEAD}}{text}" for lead, text in rows)]
     return "\n".join(lines) + "\n"
+
+
+def _led(lead: str, texts: list[str]) -> list[tuple[str, str]]:
+    """Texts with a lead word before the first."""
+    return [(lead if k == 0 else "", text) for k, text in enumerate(texts)]
 
 
 def first_masts_line(values: Json, show: Show) -> str:

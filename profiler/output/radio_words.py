@@ -160,10 +160,11 @@ def tight_lines(values: Json, show: Show) -> list[str]:
         )
     side = radio["side"]
     if side is not None:
+        where = show.distance(side["distance_m"])
         lines.append(
-            f"beside the path, {show.height(side['offset_m'])} to the {side['side']} at "
-            f"{show.distance(side['distance_m'])}: {ratio(side['f1_share'], 2)} of F1 "
-            f"(under the path {ratio(side['centre_f1_share'], 2)})"
+            f"beside the path, {show.height(side['offset_m'])} to the {side['side']} "
+            f"at {where}: {ratio(side['f1_share'], 2)} of F1 (under the path "
+            f"{ratio(side['centre_f1_share'], 2)})"
         )
     return lines
 
@@ -172,11 +173,10 @@ def pointing_lines(values: Json, show: Show) -> list[str]:
     """Bearings, tilts and the length of the ray."""
     aim = values["radio"]["pointing"]
     eye, name = names_of(values)
-    return [
-        f"{capital(eye)} {aim['azimuth_deg']:.2f}°, tilt {_tilt(aim['from_tilt_deg'])}; "
-        f"{capital(name)} {aim['back_azimuth_deg']:.2f}°, tilt "
-        f"{_tilt(aim['to_tilt_deg'])}; ray {show.length(aim['ray_m'])}"
-    ]
+    near = f"{aim['azimuth_deg']:.2f}°, tilt {_tilt(aim['from_tilt_deg'])}"
+    far = f"{aim['back_azimuth_deg']:.2f}°, tilt {_tilt(aim['to_tilt_deg'])}"
+    ray = show.length(aim["ray_m"])
+    return [f"{capital(eye)} {near}; {capital(name)} {far}; ray {ray}"]
 
 
 def _tilt(angle_deg: float) -> str:
@@ -194,9 +194,10 @@ def ground_lines(values: Json, show: Show) -> list[str]:
     lines = ["; ".join(parts)]
     mirror = radio["reflection"]
     if mirror is not None:
+        where = show.distance(mirror["distance_m"])
         lines.append(
-            f"smooth ground would reflect at {show.distance(mirror['distance_m'])}; the "
-            f"line passes {show.height(mirror['clearance_m'])} above ground there"
+            f"smooth ground would reflect at {where}; the line passes "
+            f"{show.height(mirror['clearance_m'])} above ground there"
         )
     return lines
 

@@ -64,7 +64,7 @@ def path_bench(line: SightLine, *, frequency_hz: float, rule: RuleSet) -> Bench:
     """
     grounds = line.from_.ground_m, line.to.ground_m
     if grounds[0] is None or grounds[1] is None:
-        msg = "An antenna height needs ground at both ends; give --from-ground, --to-ground."
+        msg = "Antenna heights need ground at both ends: --from-ground, --to-ground."
         raise InputError(msg)
     if line.void is not None:
         msg = (

@@ -16,7 +16,6 @@ from profiler.model import (
     BoolArray,
     EndReport,
     GeodesicPath,
-    Interpolation,
     OtherGround,
     PathProfile,
     Place,
@@ -171,16 +170,15 @@ def _end_ground(
 ) -> tuple[float | None, float | None]:
     """Ground that the DEM gives at the two ends [m].
 
-    With the highest of four posts the stations still stand on the bilinear surface:
-    lifting them with it would make the cautious way the bolder one.
+    A station on a known post beside a void has ground, though its path has none.
     """
     first, last = (float(profile.ground_m[k]) for k in (0, -1))
-    if profile.interpolation is Interpolation.HIGHEST:
+    if math.isnan(first) or math.isnan(last):
         lat = np.array([path.start.lat_deg, path.end.lat_deg])
         lon = np.array([path.start.lon_deg, path.end.lon_deg])
-        bilinear = ground_at(terrain, lat, lon)
-        # beyond the DEM, filled sea is all there is
-        first, last = np.where(np.isnan(bilinear), (first, last), bilinear).tolist()
+        there = ground_at(terrain, lat, lon)
+        first = float(there[0]) if math.isnan(first) else first
+        last = float(there[1]) if math.isnan(last) else last
     return _known(first), _known(last)
 
 

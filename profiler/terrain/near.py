@@ -12,7 +12,7 @@ from profiler.terrain.lattice import Lattice, PostReader
 #: Radius of the ring around a station, at least [m] and in cells [1]; our choice: a
 #: clump of trees or a roof is seldom wider, and a clearing seldom further.
 RING_M: Final = 60.0
-RING_CELLS: Final = 2.0
+RING_CELLS: Final = 2.5
 #: Fewest posts that tell a slope from a clump [1]; our choice: a plane takes three.
 RING_POSTS: Final = 6
 #: Half a turn [deg].
@@ -125,7 +125,7 @@ def rise_over_ring(terrain: Terrain, point: Point, ground_m: float) -> float | N
 
     Notes
     -----
-    The slope is the plane that fits the posts within `RING_M` (2 cells of a coarser
+    The slope is the plane that fits the posts within `RING_M` (2.5 cells of a coarser
     grid) best; without taking it out every hillside would look like a clump of trees.
     """
     lattice = finest_at(terrain, point)

@@ -10,10 +10,15 @@ from profiler.constants import HASH_BELOW_BYTES, SEAM_STEP_M
 from profiler.earth.geodesic import points_at
 from profiler.model.arrays import BoolArray, FloatArray, IntArray
 from profiler.model.note import Note
-from profiler.model.terrain import GeodesicPath, PathProfile, SourceFile
+from profiler.model.terrain import (
+    GeodesicPath,
+    Interpolation,
+    PathProfile,
+    SourceFile,
+)
 from profiler.terrain.dem import Terrain
 from profiler.terrain.lattice import Lattice, PostReader
-from profiler.terrain.pieces import Pieces, lay_out, read_pieces
+from profiler.terrain.pieces import Layout, Pieces, lay_out, read_pieces
 from profiler.terrain.pixel_path import PixelPath, fit_pixel_path
 
 #: Ground that differs by less at a shared crossing is continuous [m]; rounding only.
@@ -60,7 +65,12 @@ def _take_all(
     spans: Spans,
     void_as_m: float | None,
 ) -> tuple[list[Pieces], Spans]:
-    """Known pieces of every lattice, finest first, and the spans left open."""
+    """Known pieces of every lattice, finest first, and the spans left open.
+
+    With the highest of four posts the cell that a station stands in keeps its bilinear
+    ground: lifting the station with it would make the cautious way the bolder one, and
+    leaving it behind would bury its eye.
+    """
     found = []
     for lattice in terrain.lattices:
         if not spans:
@@ -68,6 +78,11 @@ def _take_all(
         pixel = _pixel_path(lattice, path)
         layout = lay_out(lattice, pixel, spans, terrain.interpolation)
         pieces = read_pieces(reader, lattice, layout, terrain.interpolation, void_as_m)
+        if terrain.interpolation is Interpolation.HIGHEST:
+            ends = (layout.start_m == 0.0) | (layout.end_m == path.length_m)
+            own = Layout(*(part[ends] for part in layout))
+            true = read_pieces(reader, lattice, own, Interpolation.BILINEAR, void_as_m)
+            pieces.height_m[ends] = true.height_m
         found.append(pieces.chosen(pieces.known))
         spans = _open_spans(pieces, ~pieces.known)
     return found, spans
