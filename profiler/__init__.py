@@ -23,7 +23,8 @@ from profiler.model import (
     Verdict,
 )
 from profiler.output.answer import Answer, look
-from profiler.shapes import read_sites
+from profiler.shapes import read_cover, read_sites
+from profiler.sight.cover_sources import cover_along
 from profiler.terrain import Terrain, open_terrain, sample_path
 
 __all__ = [
@@ -44,6 +45,7 @@ __all__ = [
     "Verdict",
     "apparent_size_deg",
     "conversion_table",
+    "cover_along",
     "hidden_by_curvature_m",
     "horizon_dip_deg",
     "horizon_distance_m",
@@ -52,6 +54,7 @@ __all__ = [
     "kr_from_weather",
     "look",
     "open_terrain",
+    "read_cover",
     "read_sites",
     "sample_path",
 ]

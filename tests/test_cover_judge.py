@@ -19,9 +19,10 @@ from profiler.model import (
 )
 from profiler.output.answer import look
 from profiler.output.standing import standing
+from profiler.radio.growth import first_failing_year
 from profiler.shapes import read_cover
 from profiler.sight import judge
-from profiler.sight.cover_sources import CoverAlong, cover_along
+from profiler.sight.cover_sources import CoverAlong, aged, cover_along
 from profiler.terrain import Terrain, open_terrain
 from tests import terrain
 from tests.looking import from_centre, opened, seen
@@ -351,6 +352,18 @@ def test_what_a_raster_does_not_know_is_a_warning_of_the_answer(
     assert [n.code for n in line.warnings] == ["cover-void"]
     assert line.profile.cover_m[0] == 9.0
     assert line.profile.cover_m[-1] == 0.0
+
+
+def test_the_year_in_which_a_wood_first_blocks_is_found(flat: Terrain) -> None:
+    wood = along(trees(1000.0, 1400.0, 15.0))
+
+    def lowest(year: int) -> float:
+        older = aged(wood, metres_per_year=0.4, years=year)
+        line = ask(flat, eye=18.1, top=18.1, cover=older)
+        return float(np.nanmin(line.margin_along_m))
+
+    assert lowest(7) == pytest.approx(0.3, abs=ROUNDING_M)
+    assert first_failing_year(lowest, years=20) == 8
 
 
 def test_cover_that_misses_the_path_changes_nothing(rough: Terrain) -> None:

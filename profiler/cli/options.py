@@ -245,6 +245,13 @@ result_options = stacked(
         ),
         option(
             "Results",
+            "--check-points",
+            metavar="FILE",
+            help="Places for the survey crew, what to measure there and how many metres "
+            "matter: .csv, .geojson or .gpx waypoints.",
+        ),
+        option(
+            "Results",
             "--draw",
             type=click.Choice(["curved-sea", "level-sea"]),
             default="curved-sea",

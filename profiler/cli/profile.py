@@ -32,6 +32,7 @@ from profiler.cli.sections import SectionCommand
 from profiler.errors import InputError
 from profiler.model import Air, Verdict
 from profiler.output.answer import Answer, look
+from profiler.output.check_points import check_points_text, writer_for
 from profiler.output.exchange import geojson_text
 from profiler.output.files import write_text
 from profiler.output.record import record_text
@@ -109,6 +110,8 @@ def path_answer(
     own_hill = own_hill_from(options)
     check_targets(options)
     check_figure_name(options.get("figure"))
+    if options.get("check_points") is not None:
+        writer_for(Path(options["check_points"]))
     places = Places(options)
     if not options["dem"]:
         msg = (
@@ -165,6 +168,10 @@ def tell(answer: Answer, options: Options) -> None:
         wrote(options["json_file"], lambda p: write_text(p, record_text(answer)))
     if options["geojson"] is not None:
         wrote(options["geojson"], lambda p: write_text(p, geojson_text(answer)))
+    if options["check_points"] is not None:
+        name, unit = Path(options["check_points"]), options["show_in"]
+        text = check_points_text(answer, name, show_in=unit)
+        wrote(options["check_points"], lambda p: write_text(p, text))
     if options["figure"] is not None:
         from profiler.output.figure import save_figure  # matplotlib: 0.6 s
 

@@ -295,7 +295,7 @@ def spare_elevation_files(options: Options, terrain: Terrain) -> None:
 
 
 def _targets(options: Options) -> list[Path]:
-    names = [options.get(k) for k in ("json_file", "figure", "geojson")]
+    names = [options.get(k) for k in ("json_file", "figure", "geojson", "check_points")]
     return [Path(n) for n in names if n is not None and n != "-"]
 
 

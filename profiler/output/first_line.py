@@ -13,6 +13,9 @@ VERDICT_WORDS: Final = {
     "undetermined": "CANNOT SAY",
 }
 
+#: A decisive point this near to an end lies on that end's own ground [m]; our choice.
+END_M: Final = 1.0
+
 Json = dict[str, Any]
 
 
@@ -99,10 +102,22 @@ def _part(values: Json, sees: str, show: Show) -> tuple[str, str]:
     )
 
 
+def at_an_end(values: Json) -> str | None:
+    """The end on whose own ground the decisive point lies; None when between them."""
+    at = values["decisive"]
+    end_m = values["path"]["distance_m"] - values["target"]["aim_moved_m"]
+    if at["distance_m"] < END_M:
+        return names_of(values)[0]
+    return names_of(values)[1] if at["distance_m"] > end_m - END_M else None
+
+
 def _pass(values: Json, show: Show) -> str:
     at = values["decisive"]
     if at is None:
         return " The path has no ground that counts."
+    end = at_an_end(values)
+    if end is not None and not values["grazing"]:
+        return f" The ground at {end} itself is the tightest."
     where = show.distance(at["distance_m"])
     if values["grazing"]:
         return f" The line grazes {standing(at).name} at {where}."

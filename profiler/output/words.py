@@ -6,7 +6,7 @@ from typing import Any, Final
 
 from profiler.model import SightLine
 from profiler.output.changes import closers, enough, openers
-from profiler.output.first_line import VERDICT_WORDS, first_line_parts
+from profiler.output.first_line import VERDICT_WORDS, at_an_end, first_line_parts
 from profiler.output.naming import capital, names_of, printable
 from profiler.output.numbers import (
     DOWN,
@@ -54,7 +54,7 @@ def words(line: SightLine, *, show_in: str = "m", assumed: Collection[str] = ())
     show = Show(unit=show_in, path_m=values["path"]["distance_m"])
     lines = [
         "".join(first_line_parts(values, show)),
-        _air_and_ground(values),
+        air_and_ground(values),
         "",
         *_ends(values, show, assumed),
         _path(values, show),
@@ -114,7 +114,8 @@ def headline(line: SightLine, *, show_in: str = "m") -> tuple[str, str]:
     return first_line_parts(values, show)
 
 
-def _air_and_ground(values: Json) -> str:
+def air_and_ground(values: Json) -> str:
+    """The second line: the air in both forms, and where the ground came from."""
     earth, terrain = values["earth"], values["terrain"]
     ke = "ke infinite" if earth["ke"] is None else f"ke {ratio(earth['ke'])}"
     kr = f"kr {ratio(earth['kr'])}"
@@ -344,7 +345,7 @@ def _check(values: Json, show: Show) -> list[str]:
         above = show.height(void["blocks_above_m"], rounding=DOWN)
         return [f"at {where}: height of ground. Above {above} blocks"]
     at = values["decisive"]
-    if at is None:
+    if at is None or at_an_end(values) is not None:
         return []
     number = _number_at(values, at["distance_m"])
     where = place(at["lat_deg"], at["lon_deg"]) if number is None else str(number)

@@ -66,7 +66,6 @@ def cover_along(
     """
     if canopy_m is not None:
         canopy(canopy_m, 1.0)
-    grown((), metres_per_year=metres_per_year, years=years)
     for raster in rasters:
         _check_cells(raster)
 
@@ -79,10 +78,34 @@ def cover_along(
             found = raster_cover(raster, path)
             spans += found.spans
             said += found.notes
-        later = grown(spans, metres_per_year=metres_per_year, years=years)
-        return PathCover(spans=later, notes=tuple(said))
+        return PathCover(spans=tuple(spans), notes=tuple(said))
 
-    return along
+    return aged(along, metres_per_year=metres_per_year, years=years)
+
+
+def aged(cover: CoverAlong, *, metres_per_year: float, years: float) -> CoverAlong:
+    """The same cover some years later, its files not read again.
+
+    Parameters
+    ----------
+    cover : function
+        From `cover_along`.
+    metres_per_year, years : float [m] and [year]
+        How fast and how long the trees grow; buildings do not.
+
+    Raises
+    ------
+    InputError
+        If growth or years is negative or not finite.
+    """
+    grown((), metres_per_year=metres_per_year, years=years)
+
+    def later(path: GeodesicPath) -> PathCover:
+        now = cover(path)
+        spans = grown(now.spans, metres_per_year=metres_per_year, years=years)
+        return replace(now, spans=spans)
+
+    return later
 
 
 def with_cover(

@@ -99,10 +99,14 @@ class Trace:
     """(n,) distance from the eye's end."""
     ground_m: FloatArray
     """(n,) elevation, NaN where none is known."""
+    top_m: FloatArray
+    """(n,) elevation of ground and cover together."""
     paper_m: FloatArray
-    """(n,) height on paper."""
+    """(n,) height of the ground on paper."""
+    paper_top_m: FloatArray
+    """(n,) height on paper of ground and cover together."""
     margin_m: FloatArray
-    """(n,) sight line minus ground, continued past the aim point."""
+    """(n,) sight line minus ground and cover, continued past the aim point."""
     seen: BoolArray
     """(n,) whether the eye sees the ground."""
 
@@ -110,13 +114,15 @@ class Trace:
 def trace_of(course: Course) -> Trace:
     """The ground to draw; a peak, a hollow or a void of the profile is never lost."""
     profile = course.line.profile
-    dist, ground = profile.dist_m, profile.ground_m
-    margin = course.sight_m(dist) - ground
+    dist, ground, top = profile.dist_m, profile.ground_m, profile.top_m
+    margin = course.sight_m(dist) - top
     keep = thinned(dist, margin, profile.length_m)
     return Trace(
         dist_m=dist[keep],
         ground_m=ground[keep],
+        top_m=top[keep],
         paper_m=course.paper_m(dist, ground)[keep],
+        paper_top_m=course.paper_m(dist, top)[keep],
         margin_m=margin[keep],
         seen=course.line.ground_seen[keep],
     )

@@ -21,10 +21,13 @@ PNG_DPI: Final = 150.0
 #: Points in an inch [pt].
 PT_PER_IN: Final = 72.0
 
-#: Okabe and Ito, Color Universal Design (2008): blue, orange, reddish purple.
+#: Okabe and Ito, Color Universal Design (2008): blue, orange, reddish purple, sky
+#: blue, bluish green.
 SIGHT: Final = "#0072B2"
 GRAZING: Final = "#E69F00"
 DISC: Final = "#CC79A7"
+ZONE: Final = "#56B4E9"
+COVER: Final = "#009E73"
 #: Greys: ground, its edge, hatching, lines of equal height, quiet letters.
 GROUND: Final = "#DADADA"
 EDGE: Final = "#000000"
@@ -38,6 +41,8 @@ SIZE: Final = 8.5
 SMALL: Final = 8.0
 HEAD: Final = 15.0
 SUBHEAD: Final = 11.5
+#: Letters of the footer: seven pixels at 900 [pt].
+FINE: Final = 7.0
 #: The headline shrinks to this before it is cut [pt].
 HEAD_LEAST: Final = 11.0
 #: Distance between lines of text over their size [1].
@@ -51,6 +56,15 @@ RAY_WIDTH: Final = 1.7
 #: Dash-dot of the grazing ray and dashes of the sea [pt].
 DASH_DOT: Final = (0, (6.0, 2.0, 1.2, 2.0))
 SEA_DASHES: Final = (0, (9.0, 3.0))
+#: Dots of the Fresnel zone and dashes of the rule's line [pt].
+ZONE_DOTS: Final = (0, (1.0, 1.3))
+RULE_DASHES: Final = (0, (4.0, 1.8))
+#: Widths of the zone's outline and of the rule's line [pt].
+ZONE_WIDTH: Final = 1.6
+#: Dots inside cover, and the width of its edge [pt].
+STIPPLE: Final = "......"
+COVER_WIDTH: Final = 0.9
+RULE_WIDTH: Final = 1.3
 #: Size of ring A and square B, ticks and their distance to numbers [pt].
 MARKER: Final = 8.5
 TICK: Final = 3.0
@@ -68,7 +82,7 @@ BASELINE_IN: Final = 0.05
 
 ELLIPSIS: Final = "…"
 #: Drawn in place of a character that the font has not.
-MISSING: Final = "□"
+MISSING: Final = "?"
 
 _FONTS: Final = Path(mpl.get_data_path()) / "fonts" / "ttf"
 
@@ -95,17 +109,19 @@ class Area(NamedTuple):
 #: The areas of the page [in]; chosen by eye.
 HEAD_AREA: Final = Area(0.3, 7.47, 11.09, 0.66)
 ENDS_AREA: Final = Area(0.9, 7.0, 8.0, 0.34)
-KEY_AREA: Final = Area(0.9, 6.74, 8.0, 0.18)
-PROFILE_AREA: Final = Area(0.9, 3.72, 8.0, 2.96)
-LANE_AREA: Final = Area(0.9, 3.4, 8.0, 0.32)
-STRIP_AREA: Final = Area(0.9, 2.62, 8.0, 0.78)
-TABLE_AREA: Final = Area(0.3, 0.66, 5.5, 1.56)
-NEEDED_AREA: Final = Area(6.0, 0.66, 2.9, 1.56)
-TARGET_AREA: Final = Area(9.72, 4.5, 1.67, 2.3)
-TARGET_TEXT_AREA: Final = Area(9.2, 3.72, 2.19, 0.7)
-MAP_AREA: Final = Area(9.2, 0.95, 2.19, 2.45)
-MAP_FOOT_AREA: Final = Area(9.2, 0.66, 2.19, 0.24)
-FOOT_AREA: Final = Area(0.3, 0.13, 11.09, 0.42)
+KEY_AREA: Final = Area(0.9, 6.62, 8.0, 0.34)
+PROFILE_AREA: Final = Area(0.9, 3.86, 8.0, 2.72)
+LANE_AREA: Final = Area(0.9, 3.54, 8.0, 0.32)
+STRIP_AREA: Final = Area(0.9, 2.76, 8.0, 0.78)
+TABLE_AREA: Final = Area(0.3, 0.86, 5.5, 1.5)
+NEEDED_AREA: Final = Area(6.0, 0.86, 2.9, 1.5)
+SIDE_AREA: Final = Area(9.2, 3.86, 2.19, 3.48)
+TARGET_AREA: Final = Area(9.72, 4.72, 1.67, 2.2)
+TARGET_TEXT_AREA: Final = Area(9.2, 3.86, 2.19, 0.78)
+VIEW_AREA: Final = Area(9.62, 4.1, 1.77, 1.6)
+MAP_AREA: Final = Area(9.2, 1.19, 2.19, 2.42)
+MAP_FOOT_AREA: Final = Area(9.2, 0.92, 2.19, 0.24)
+FOOT_AREA: Final = Area(0.3, 0.13, 11.09, 0.72)
 
 
 def new_page() -> Figure:

@@ -7,7 +7,7 @@ from matplotlib.ticker import MaxNLocator
 
 from profiler.constants import FOOT_M, M_PER_KM, MILE_M
 from profiler.model import SightLine
-from profiler.output.figures.page import PROFILE_AREA
+from profiler.output.figures.page import PROFILE_AREA, Area
 from profiler.output.numbers import Show, ratio
 
 #: Steps between ticks, as multiples of a power of ten [1]; our choice.
@@ -54,6 +54,12 @@ class Scale:
         """Ends of the drawing, in the unit of distances."""
         length = self.length_m / self.distance_unit_m
         return -END_SHARE * length, (1.0 + END_SHARE) * length
+
+    def x_in(self, distance_m: float, area: Area) -> float:
+        """Where a place on the path stands on the page [in], in a drawing's area."""
+        low, high = self.x_limits()
+        share = (distance_m / self.distance_unit_m - low) / (high - low)
+        return area.left + share * area.width
 
     def exaggeration(self, low_m: float, high_m: float) -> float:
         """How many times larger heights are drawn than distances [1]."""

@@ -1,20 +1,14 @@
 """The words around the drawings: ends, key, table of discs, needed heights, footer."""
 
 from collections.abc import Sequence
-from typing import Any, Final, NamedTuple
+from typing import Final
 
-from matplotlib.axes import Axes
 from matplotlib.figure import Figure
-from matplotlib.lines import Line2D
-from matplotlib.patches import Rectangle
 
-from profiler.constants import VERSION
 from profiler.model import EndReport, SightLine, Verdict
 from profiler.output.figures import page
-from profiler.output.figures.course import Course
-from profiler.output.figures.ends import Limits
 from profiler.output.figures.marks import Mark
-from profiler.output.figures.scale import Scale, times_text
+from profiler.output.figures.scale import Scale
 from profiler.output.figures.strip import draw_disc
 from profiler.output.numbers import DOWN, UP, latitude, longitude, ratio
 
@@ -121,78 +115,6 @@ def draw_ends(figure: Figure, line: SightLine, scale: Scale) -> None:
             page.fit(figure, artist, half, least_pt=page.SMALL)
 
 
-class Entry(NamedTuple):
-    """One sample of the key."""
-
-    label: str
-    line: dict[str, Any] | None
-    """Look of a line; None draws a patch of ``hatch``."""
-    hatch: str
-
-
-_ENTRIES: Final = (
-    Entry("sight line", {"color": page.SIGHT, "lw": page.RAY_WIDTH}, ""),
-    Entry(
-        "grazing ray",
-        {"color": page.GRAZING, "lw": page.RAY_WIDTH, "ls": page.DASH_DOT},
-        "",
-    ),
-    Entry("ground seen", {"color": page.EDGE, "lw": page.THICK}, ""),
-    Entry("not seen", None, "//////"),
-    Entry("no ground", None, "xxxx"),
-    Entry(
-        "sea level", {"color": page.QUIET, "lw": page.THIN, "ls": page.SEA_DASHES}, ""
-    ),
-    Entry("needed height", {"color": page.EDGE, "lw": page.RAY_WIDTH}, "_"),
-    Entry(
-        "given point",
-        {"color": page.EDGE, "lw": 0.0, "marker": "+", "mew": page.RAY_WIDTH},
-        "",
-    ),
-)
-
-
-def draw_key(figure: Figure, ax: Axes) -> None:
-    """Samples of what the profile shows, in one row, only what is there."""
-    present = set(ax.get_legend_handles_labels()[1])
-    area = page.KEY_AREA
-    y = area.bottom + 0.05
-    entries = [entry for entry in _ENTRIES if entry.label in present]
-    texts = [page.write(figure, 0.0, y, e.label, size=page.SMALL) for e in entries]
-    wide = [SAMPLE_IN + KEY_GAP_IN + page.width_in(figure, text) for text in texts]
-    free = (area.width - sum(wide)) / max(len(wide) - 1, 1)
-    x = area.left
-    for entry, text, width in zip(entries, texts, wide, strict=True):
-        _sample(figure, entry, x, y)
-        text.set_x((x + SAMPLE_IN + KEY_GAP_IN) / page.PAGE_IN[0])
-        x += width + min(KEY_APART_IN, free)
-
-
-def _sample(figure: Figure, entry: Entry, x: float, y: float) -> None:
-    wide, tall = page.PAGE_IN
-    middle = y + page.SMALL / page.PT_PER_IN * MIDDLE
-    if entry.line is None:
-        figure.add_artist(
-            Rectangle(
-                (x / wide, (middle - 0.05) / tall),
-                SAMPLE_IN / wide,
-                TABLE_DISC_IN * MIDDLE * 2.0 / tall,
-                facecolor=page.PAPER if entry.hatch == "xxxx" else page.GROUND,
-                edgecolor=page.HATCHING,
-                hatch=entry.hatch,
-                lw=page.THIN,
-            )
-        )
-        return
-    ends = (x, x + SAMPLE_IN)
-    if entry.hatch == "_":
-        ends = (x + SAMPLE_IN / 3.0, x + 2.0 * SAMPLE_IN / 3.0)
-    if "marker" in entry.line:
-        ends = (x + SAMPLE_IN / 2.0,) * 2
-    xs = [end / wide for end in ends]
-    figure.add_artist(Line2D(xs, [middle / tall] * 2, **entry.line))
-
-
 #: The table's columns: left or right edge from the table's own [in].
 _COLUMNS: Final = (
     (DISTANCE_END_IN, "right"),
@@ -289,54 +211,4 @@ def draw_needed(figure: Figure, line: SightLine, scale: Scale) -> None:
     for text in lines:
         y -= ROW_IN
         artist = page.write(figure, area.left, y, text, size=page.SMALL)
-        page.fit(figure, artist, area.width, least_pt=page.SMALL)
-
-
-def footer_lines(course: Course, limits: Limits, scale: Scale) -> list[str]:
-    """Ground, air and drawing, and the caution."""
-    line = course.line
-    profile, earth = line.profile, line.earth
-    ground = "no file gives ground"
-    if profile.files:
-        file = profile.files[0]
-        more = f" and {len(profile.files) - 1} more" if len(profile.files) > 1 else ""
-        digest = f" {file.sha256[:HASH_SHOWN]}" if file.sha256 else ""
-        posts = " x ".join(_side(side) for side in file.cell_m)
-        name = short(file.name, FILE_MOST)
-        ground = f"{name}{digest}{more}, posts {posts} m"
-    both = f"kr {ratio(earth.kr)} = " + (
-        "flat earth" if earth.ke is None else f"ke {ratio(earth.ke)}"
-    )
-    how = "default" if earth.is_default else f"given as {earth.stated}"
-    sea = "curved sea, straight line" if course.curved else "level sea, bent line"
-    if not limits.has_sea:
-        sea += " (the sea itself lies off the drawing)"
-    times = times_text(scale.exaggeration(limits.low_m, limits.high_m))
-    both = both.replace("-", "−")
-    return [
-        f"Ground: {ground}, {profile.interpolation.value}.  Air: {both} ({how}).",
-        f"Drawn: {sea}, heights drawn {times} times.  overbrow {VERSION}, terrain "
-        "line-of-sight profiler.",
-        line.cautions[0].text,
-    ]
-
-
-def _side(side_m: float) -> str:
-    return f"{side_m:.0f}" if side_m >= WHOLE_POSTS_M else ratio(side_m, 1)
-
-
-def draw_foot(figure: Figure, course: Course, limits: Limits, scale: Scale) -> None:
-    """The footer of the page."""
-    area = page.FOOT_AREA
-    lines = footer_lines(course, limits, scale)
-    step = page.SMALL * page.LINE_SPACING / page.PT_PER_IN
-    for k, text in enumerate(reversed(lines)):
-        artist = page.write(
-            figure,
-            area.left,
-            area.bottom + 0.02 + k * step,
-            text,
-            size=page.SMALL,
-            color=page.QUIET if k else page.EDGE,
-        )
         page.fit(figure, artist, area.width, least_pt=page.SMALL)
