@@ -343,7 +343,9 @@ def read_rest(sheet: Sheet) -> None:
         gap = end["ground_m"] - end["dem_ground_m"]
         side = "above" if gap > 0.0 else "below"
         sheet.take(f"survey # UNIT {side} the DEM", sheet.height(abs(gap)))
-    sheet.take(r"careful(.|\n)*\nJudged for light\.\n", free)
+    sheet.take(
+        r"careful(.|\n)*\nJudged for light\. For a radio path add --frequency\.\n", free
+    )
 
 
 def read_all(sheet: Sheet) -> None:

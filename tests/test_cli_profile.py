@@ -36,7 +36,7 @@ def test_the_verdict_is_a_status_only_when_asked(
 def test_stdout_is_the_answer_and_stderr_the_next_step() -> None:
     ended = profile(*HIDDEN)
     assert ended.out.startswith("HIDDEN. ")
-    assert ended.out.endswith("Judged for light.\n")
+    assert ended.out.endswith("Judged for light. For a radio path add --frequency.\n")
     assert ended.err == "Next: add --figure profile.png to see it drawn.\n"
 
 

@@ -50,7 +50,7 @@ def cover_from(
         If a raster cannot be used.
     """
     has_cover = canopy_m is not None or bool(files)
-    _check_growth(growth_m, years, has_cover=has_cover)
+    check_growth(growth_m, years, has_cover=has_cover)
     if not has_cover:
         return None
     shapes: list[CoverShape] = []
@@ -73,9 +73,16 @@ def cover_from(
     )
 
 
-def _check_growth(
+def check_growth(
     growth_m: float | None, years: float | None, *, has_cover: bool
 ) -> None:
+    """Refuse growth without years, years without growth, and either without trees.
+
+    Raises
+    ------
+    InputError
+        If one is missing or cannot be.
+    """
     if (growth_m is None) != (years is None):
         given, other = "--growth", "--years 10"
         if growth_m is None:

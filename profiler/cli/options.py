@@ -155,6 +155,36 @@ ground_options = stacked(
         ),
         option(
             "Ground",
+            "--canopy",
+            type=HEIGHT,
+            metavar="HEIGHT",
+            help="Trees of this height stand everywhere, such as 15m.  [default: none]",
+        ),
+        option(
+            "Ground",
+            "--cover",
+            multiple=True,
+            metavar="FILE",
+            help="Trees and buildings: outlines or points with heights, or a raster of "
+            "heights above ground; repeatable.",
+        ),
+        option(
+            "Ground",
+            "--growth",
+            type=HEIGHT,
+            metavar="HEIGHT",
+            help="Trees grow by this a year, such as 0.4m; needs --years.",
+        ),
+        option(
+            "Ground",
+            "--years",
+            type=click.IntRange(min=0, max=200),
+            metavar="N",
+            help="Years of growth; the answer is for the last, and the first that "
+            "fails is named.",
+        ),
+        option(
+            "Ground",
             "--hash",
             "hash_all",
             is_flag=True,
@@ -247,8 +277,8 @@ result_options = stacked(
             "Results",
             "--check-points",
             metavar="FILE",
-            help="Places for the survey crew, what to measure there and how many metres "
-            "matter: .csv, .geojson or .gpx waypoints.",
+            help="Places for the survey crew, what to measure there and how many "
+            "metres matter: .csv, .geojson or .gpx waypoints.",
         ),
         option(
             "Results",

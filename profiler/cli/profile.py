@@ -23,6 +23,8 @@ from profiler.cli.question import (
     check_heights,
     check_radio_heights,
     check_targets,
+    cover_in,
+    cover_of,
     own_hill_from,
     rule_from,
     spare_elevation_files,
@@ -31,7 +33,7 @@ from profiler.cli.question import (
 from profiler.cli.sections import SectionCommand
 from profiler.errors import InputError
 from profiler.model import Air, Verdict
-from profiler.output.answer import Answer, look
+from profiler.output.answer import Answer, look, look_ahead
 from profiler.output.check_points import check_points_text, writer_for
 from profiler.output.exchange import geojson_text
 from profiler.output.files import write_text
@@ -123,17 +125,26 @@ def path_answer(
     spare_elevation_files(options, terrain)
     eye, target = (places.station(role, terrain) for role in ("from", "to"))
     check_ends(terrain, eye, target, in_degrees=options["crs"] is None)
-    return look(
-        terrain,
-        eye,
-        target,
-        air=air,
-        own_hill_m=own_hill,
-        ignore_near_m=options["ignore_near"],
-        void_below_m=options["void_below"],
-        frequency_hz=frequency_hz,
-        rule=rule,
-    )
+    cover = cover_of(options)
+    years, growth_m = options["years"] or 0, options["growth"] or 0.0
+
+    def answer_in(year: int) -> Answer:
+        return look(
+            terrain,
+            eye,
+            target,
+            air=air,
+            own_hill_m=own_hill,
+            ignore_near_m=options["ignore_near"],
+            void_below_m=options["void_below"],
+            cover=cover_in(cover, growth_m, year),
+            frequency_hz=frequency_hz,
+            rule=rule,
+        )
+
+    if cover is None or not years:
+        return answer_in(0)
+    return look_ahead(answer_in, metres_per_year=growth_m, years=years)
 
 
 def check_figure_name(name: str | None) -> None:

@@ -18,6 +18,7 @@ from profiler.terrain import Terrain, open_terrain
 
 if TYPE_CHECKING:
     from profiler.radio.answer import Rule
+    from profiler.sight.cover_sources import CoverAlong
 
 #: Room added around a question when the ground it needs is named [deg]; our choice.
 BOX_ROOM_DEG = 0.01
@@ -56,6 +57,35 @@ def air_from(options: Options) -> Air:
         return Air(ke=KE_RADIO, assumed=True)
     kr = 0.0 if options["no_refraction"] else options["kr"]
     return Air(ke=ke, kr=kr, n_gradient_per_km=options["n_gradient"])
+
+
+def cover_of(options: Options) -> "CoverAlong | None":
+    """Trees and buildings as they stand today; None without any.
+
+    Raises
+    ------
+    InputError
+        If a file or the growth cannot be used.
+    """
+    stated = ("canopy", "growth", "years")
+    if not options["cover"] and all(options[name] is None for name in stated):
+        return None
+    from profiler.cli.cover_options import check_growth, cover_from
+
+    has_cover = options["canopy"] is not None or bool(options["cover"])
+    check_growth(options["growth"], options["years"], has_cover=has_cover)
+    return cover_from(canopy_m=options["canopy"], files=options["cover"])
+
+
+def cover_in(
+    cover: "CoverAlong | None", growth_m: float, year: int
+) -> "CoverAlong | None":
+    """The cover some years from today."""
+    if cover is None or year == 0:
+        return cover
+    from profiler.sight.cover_sources import aged
+
+    return aged(cover, metres_per_year=growth_m, years=year)
 
 
 def rule_from(options: Options) -> "Rule | None":

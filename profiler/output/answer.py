@@ -1,14 +1,16 @@
 """An answer that tells itself: the sight line with its record, words and figure."""
 
-from dataclasses import dataclass, fields
+import math
+from collections.abc import Callable
+from dataclasses import dataclass, fields, replace
 from pathlib import Path
 from typing import TYPE_CHECKING, Any
 
 from profiler.constants import KE_RADIO, VOID_BELOW_M
-from profiler.model import Air, SightLine, Station
+from profiler.model import Air, SightLine, Station, Verdict
 from profiler.output.exchange import geojson
 from profiler.output.record import record, record_text
-from profiler.output.told import Told
+from profiler.output.told import Growth, Told
 from profiler.output.words import headline, words
 from profiler.sight import judge
 from profiler.sight.cover_sources import CoverAlong
@@ -199,3 +201,38 @@ def look(
         if radio is not None:
             values["warnings"] = (*line.warnings, *radio.result.warnings)
     return Answer(**values, terrain=terrain, radio=radio)
+
+
+def look_ahead(
+    answer_in: Callable[[int], Answer], *, metres_per_year: float, years: int
+) -> Answer:
+    """The answer at the end of a period, with the year in which it first fails.
+
+    Parameters
+    ----------
+    answer_in : function
+        From a year, 0 for today, to the answer with trees as they stand then.
+    metres_per_year : float [m]
+        How fast they grow, for the telling.
+    years : int
+        Length of the period.
+
+    Raises
+    ------
+    InputError
+        If ``years`` is negative.
+    """
+    from profiler.radio.growth import first_failing_year  # only for growing trees
+
+    year = first_failing_year(lambda y: _worst_margin(answer_in(y)), years=years)
+    growth = Growth(
+        metres_per_year=metres_per_year, years=years, first_failing_year=year
+    )
+    return replace(answer_in(years), growth=growth)
+
+
+def _worst_margin(answer: Answer) -> float:
+    """What the rule leaves; without a rule the margin of the bare line [m]."""
+    if answer.radio is not None and answer.verdict is not Verdict.BLOCKED:
+        return answer.radio.result.governing.margin_m
+    return math.inf if answer.margin_m is None else answer.margin_m

@@ -13,6 +13,8 @@ from dataclasses import dataclass, replace
 from pathlib import Path
 from typing import Any, Final
 
+import numpy as np
+
 from profiler.errors import InputError
 from profiler.model import SightLine
 from profiler.output.naming import capital, names_of, printable
@@ -97,7 +99,7 @@ def check_points(line: SightLine, *, show_in: str = "m") -> tuple[CheckPoint, ..
     """
     values = record(line)
     show = Show(unit=show_in, path_m=values["path"]["distance_m"])
-    found = [*_sight(values, show), *_radio(values, show)]
+    found = [*_sight(line, values, show), *_radio(values, show)]
     found.sort(key=lambda point: (point.distance_m, point.offset_m))
     merged: list[CheckPoint] = []
     for point in found:
@@ -125,6 +127,7 @@ def _together(one: CheckPoint, other: CheckPoint) -> CheckPoint:
     return replace(
         one,
         why=f"{one.why}; {other.why}",
+        ground_m=other.ground_m if one.ground_m is None else one.ground_m,
         decides_m=min(told) if told else None,
     )
 
@@ -169,7 +172,15 @@ def _at(
     )
 
 
-def _sight(values: Json, show: Show) -> list[CheckPoint]:
+def _ground_of(line: SightLine, stretch: Json) -> float | None:
+    """Ground at the worst place of a stretch; None under trees or a building [m]."""
+    if stretch["cover_kind"] is not None:
+        return None
+    sight = np.interp(stretch["worst_at_m"], line.profile.dist_m, line.sight_m)
+    return metres(float(sight) - stretch["worst_margin_m"])
+
+
+def _sight(line: SightLine, values: Json, show: Show) -> list[CheckPoint]:
     """Decisive point, blocked stretches, void and horizon point."""
     points = []
     at, horizon, void = values["decisive"], values["horizon"], values["void"]
@@ -183,7 +194,8 @@ def _sight(values: Json, show: Show) -> list[CheckPoint]:
         run = f"{show.bare_distance(stretch['start_m'])}-"
         run += show.distance(stretch["end_m"])
         why = f"worst of blocked stretch {number} ({run}), {over} above the line"
-        points.append(_at(stretch, why, -stretch["worst_margin_m"], dist="worst_at_m"))
+        place = {**stretch, "ground_m": _ground_of(line, stretch)}
+        points.append(_at(place, why, -stretch["worst_margin_m"], dist="worst_at_m"))
     if void is not None:
         above = show.height(void["blocks_above_m"], rounding=DOWN)
         middle = (void["start_m"] + void["end_m"]) / 2.0

@@ -23,7 +23,7 @@ from profiler.model import (
 )
 from profiler.output.rounding import M_DECIMALS, deg, metres, ratio
 from profiler.output.standing import cover_rows
-from profiler.output.told import radio_of
+from profiler.output.told import growth_of, radio_of
 
 #: Name and version of the record's form.
 SCHEMA: Final = "overbrow/profile/1"
@@ -82,6 +82,7 @@ def record(line: SightLine) -> Json:
             "sea_filled_m": metres(line.profile.sea_filled_m),
         },
         **_radio(line),
+        **_growth(line),
         "cautions": [_note(n) for n in line.cautions],
         "warnings": [_note(n) for n in line.warnings],
         "software": {"name": "overbrow", "version": VERSION},
@@ -252,3 +253,17 @@ def _radio(line: SightLine) -> Json:
     from profiler.output.radio_record import radio_record  # only for a radio path
 
     return {"radio": radio_record(radio)}
+
+
+def _growth(line: SightLine) -> Json:
+    """The growth of trees, only where it was asked for."""
+    growth = growth_of(line)
+    if growth is None:
+        return {}
+    return {
+        "growth": {
+            "metres_per_year": metres(growth.metres_per_year),
+            "years": growth.years,
+            "first_failing_year": growth.first_failing_year,
+        }
+    }

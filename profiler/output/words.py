@@ -63,6 +63,7 @@ def words(line: SightLine, *, show_in: str = "m", assumed: Collection[str] = ())
         *_radio_lines(values, show),
         *_led("shown", [] if "radio" in values else _shown(values, show)),
         *_would_change(values, show),
+        *_led("growth", _growth(values)),
         *_led("left out", _left_out(values, show)),
         *_led("DEM alone", _other_ground(values, show)),
         *_led("check", _check(values, show)),
@@ -85,6 +86,21 @@ def _radio_lines(values: Json, show: Show) -> list[str]:
         *_led("ground", radio.ground_lines(values, show)),
         *_led("loss", radio.loss_lines(values)),
     ]
+
+
+def _growth(values: Json) -> list[str]:
+    """When growing trees first spoil the answer."""
+    growth = values.get("growth")
+    if growth is None:
+        return []
+    what = "the rule" if "radio" in values else "the line"
+    year = growth["first_failing_year"]
+    if year is None:
+        ends = f"{what} holds for all {growth['years']} years"
+    else:
+        ends = f"{what} first fails in year {year}"
+    rate = ratio(growth["metres_per_year"])
+    return [f"trees by {rate} m a year, shown after {growth['years']} years: {ends}"]
 
 
 def _judged_for(values: Json) -> str:

@@ -44,7 +44,9 @@ def check(options: dict[str, str]) -> Ended:
     ended = ask(options)
     if ended.status == 0:
         assert ended.out.startswith(FIRST)
-        assert ended.out.endswith("Judged for light.\n")
+        assert ended.out.endswith(
+            "Judged for light. For a radio path add --frequency.\n"
+        )
     else:
         assert ended.status in (2, 3)
         assert ended.out == ""

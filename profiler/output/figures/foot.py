@@ -95,8 +95,6 @@ def draw_foot(figure: Figure, quiet: list[str], cautions: list[str]) -> None:
     y = area.bottom + page.BASELINE_IN + step * (len(quiet) + len(cautions) - 1)
     for texts, color in ((quiet, page.QUIET), (cautions, page.EDGE)):
         for text in texts:
-            artist = page.write(
-                figure, area.left, y, text, size=page.FINE, color=color
-            )
+            artist = page.write(figure, area.left, y, text, size=page.FINE, color=color)
             page.fit(figure, artist, area.width, least_pt=page.FINE)
             y -= step
