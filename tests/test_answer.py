@@ -37,7 +37,7 @@ def test_an_answer_is_a_sight_line_with_its_terrain() -> None:
     answer = answer_of(*HIDDEN)
     assert isinstance(answer, SightLine)
     own = {f.name for f in fields(Answer)} - {f.name for f in fields(SightLine)}
-    assert own == {"terrain"}
+    assert own == {"terrain", "radio", "growth"}
     assert answer.terrain.rasters[0].path == UPLAND
 
 

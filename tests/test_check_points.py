@@ -21,7 +21,7 @@ from profiler.output.check_points import (
     check_points_gpx,
     writer_for,
 )
-from tests.asking import HIDDEN, PART, SEA, UPLAND, answer_of, profile, record_of
+from tests.asking import HIDDEN, PART, SEA, UPLAND, answer_of, profile, record_of, run
 
 RADIO = (*HIDDEN, "--frequency", "6GHz", "--rule-set", "p530-temperate")
 #: Clear, with ground inside the first zone.
@@ -209,8 +209,6 @@ def test_another_ending_is_refused_before_any_work() -> None:
 def test_check_points_never_overwrite_what_the_question_reads(tmp_path: Path) -> None:
     sites = tmp_path / "sites.csv"
     sites.write_text("name,lat,lon\nA,48.2092,-21.50344\nB,48.32758,-21.17892\n")
-    from tests.asking import run
-
     ended = run(
         *("profile", "--dem", str(UPLAND), "--sites", str(sites)),
         *("--from", "A", "--to", "B", "--check-points", str(sites)),

@@ -83,9 +83,9 @@ def test_every_command_explains_every_option(name: str) -> None:
 
 def test_the_help_of_profile_names_unit_default_and_an_example_by_section() -> None:
     text = " ".join(run("profile", "--help").out.split())
-    for section in ("Question:", "Ground:", "Air:", "Results:"):
+    for section in ("Question:", "Ground:", "Air:", "Radio:", "Results:"):
         assert section in text
-    assert text.count("Example:") == 4
+    assert text.count("Example:") == 5
     for default in ("1.7m", "0, bare ground", "0.13, light", "9000m", "100m and 3"):
         assert default in text
 
@@ -94,7 +94,7 @@ def test_the_help_of_profile_names_unit_default_and_an_example_by_section() -> N
     ("typed", "said"),
     [
         ("prifile", 'No command "prifile". Nearest: profile.'),
-        ("zzz", 'No command "zzz". Known: profile, inspect, demo.'),
+        ("zzz", 'No command "zzz". Known: profile, masts, diffraction, inspect, demo.'),
     ],
 )
 def test_an_unknown_command_is_refused_with_the_nearest(typed: str, said: str) -> None:

@@ -29,7 +29,7 @@ WITHIN_F1: Final = 1.0
 #: side of any cell.
 SAME_PLACE_M: Final = 0.5
 #: What a spreadsheet takes for the beginning of a formula.
-FORMULA_SIGNS: Final = ("=", "+", "-", "@", "\t", "\r")
+FORMULA_SIGNS: Final = ("=", "+", "-", "@")
 #: Namespace of GPX 1.1.
 GPX: Final = "http://www.topografix.com/GPX/1/1"
 #: Longitude of the antimeridian [deg]; GPX 1.1 ends just before it.
@@ -177,7 +177,8 @@ def _ground_of(line: SightLine, stretch: Json) -> float | None:
     if stretch["cover_kind"] is not None:
         return None
     sight = np.interp(stretch["worst_at_m"], line.profile.dist_m, line.sight_m)
-    return metres(float(sight) - stretch["worst_margin_m"])
+    ground: float = metres(float(sight) - stretch["worst_margin_m"])
+    return ground
 
 
 def _sight(line: SightLine, values: Json, show: Show) -> list[CheckPoint]:
@@ -264,7 +265,7 @@ def _cell(value: str | float | None, column: str) -> str:
     if value is None:
         return ""
     if isinstance(value, str):
-        # a spreadsheet would run a cell that begins like a formula
+        # a spreadsheet would run a cell that begins like a formula; tabs are gone
         text = printable(value)
         return f"'{text}" if text.startswith(FORMULA_SIGNS) else text
     return f"{value:.9f}" if column.endswith("_deg") else f"{value:.3f}"

@@ -14,7 +14,10 @@ from profiler.output.figures.course import (
     trace_of,
     void_runs,
 )
+from profiler.output.figures.foot import caution_lines, draw_foot, footer_lines
+from profiler.output.figures.key import draw_key
 from profiler.output.figures.marks import marks_of
+from profiler.output.figures.needs import draw_needed
 from profiler.output.figures.plan import (
     GroundMap,
     draw_plan,
@@ -24,17 +27,19 @@ from profiler.output.figures.plan import (
 from profiler.output.figures.profile import draw_profile, limits_of
 from profiler.output.figures.save import save_figure
 from profiler.output.figures.scale import Scale, scale_of
-from profiler.output.figures.strip import draw_lane, draw_strip, is_cut
-from profiler.output.figures.tables import (
-    draw_ends,
-    draw_foot,
-    draw_head,
-    draw_key,
-    draw_needed,
-    draw_table,
-)
+from profiler.output.figures.sheet import draw_sheet
+from profiler.output.figures.strip import draw_lane, draw_strip, is_cut, leaders_in
+from profiler.output.figures.tables import draw_ends, draw_head, draw_table
 from profiler.output.figures.target import draw_target, has_drawing, target_lines
+from profiler.output.figures.view import draw_view
+from profiler.output.figures.zone import (
+    draw_zone,
+    draw_zone_words,
+    has_rule,
+    zone_of,
+)
 from profiler.output.numbers import DOWN
+from profiler.output.told import radio_of
 
 __all__ = [
     "CURVED_SEA",
@@ -92,13 +97,17 @@ def draw_figure(
     course = course_of(line, draw)
     scale = scale_of(line, show_in)
     trace = trace_of(course)
-    limits = limits_of(course, trace)
+    zone = zone_of(course)
+    limits = limits_of(course, trace, zone)
     marks, left_out = marks_of(course)
     figure = page.new_page()
     draw_head(figure, headline)
     draw_ends(figure, line, scale)
     profile = page.area_axes(figure, page.PROFILE_AREA, "profile")
     draw_profile(profile, course, trace, limits, scale)
+    if zone is not None:
+        draw_zone(profile, course, zone, scale)
+        draw_zone_words(figure, zone, scale, leaders_in(marks, scale))
     draw_key(figure, profile)
     strip = page.area_axes(figure, page.STRIP_AREA, "margin")
     draw_strip(strip, course, trace, scale)
@@ -107,12 +116,17 @@ def draw_figure(
     _void_words(figure, course, scale)
     draw_table(figure, marks, left_out, scale)
     draw_needed(figure, line, scale)
-    _target(figure, course, scale)
+    if zone is not None:
+        draw_sheet(figure, zone.radio, scale)
+    elif has_drawing(course):
+        _target(figure, course, scale)
+    else:
+        draw_view(figure, course, trace, limits, scale)
     if ground_map is not None:
         plan = page.area_axes(figure, page.MAP_AREA, "plan")
         draw_plan(plan, ground_map, marks, line.path.length_m)
         draw_plan_foot(figure, ground_map, scale)
-    draw_foot(figure, course, limits, scale)
+    draw_foot(figure, footer_lines(course, limits, scale), caution_lines(line))
     return figure
 
 
@@ -135,14 +149,14 @@ def _axis_words(figure: Figure, course: Course, scale: Scale) -> None:
                 va="center",
                 size=page.SMALL,
             )
-    page.write(
-        figure,
-        strip.left + strip.width / 2.0,
-        strip.bottom - DISTANCE_WORDS_IN,
-        f"{scale.distance_unit} from A",
-        size=page.SMALL,
-        ha="center",
-    )
+    y = strip.bottom - DISTANCE_WORDS_IN
+    text, middle = f"{scale.distance_unit} from A", strip.left + strip.width / 2.0
+    page.write(figure, middle, y, text, size=page.SMALL, ha="center")
+    radio = radio_of(course.line)
+    if radio is not None and has_rule(radio):
+        asked = radio.result.governing.criterion.text
+        text = f"dashed: what {asked} leaves"
+        page.write(figure, strip.right, y, text, size=page.SMALL, ha="right")
 
 
 def void_words(course: Course, scale: Scale) -> tuple[list[str], float]:
@@ -185,18 +199,13 @@ def _void_words(figure: Figure, course: Course, scale: Scale) -> None:
 
 
 def _target(figure: Figure, course: Course, scale: Scale) -> None:
-    """The target to its own scale with its words; a bare point needs words only."""
+    """The target to its own scale with its words."""
     words = page.TARGET_TEXT_AREA
     head = page.ENDS_AREA.top - page.SIZE / page.PT_PER_IN
-    drawn = has_drawing(course)
-    title = f"B to its own scale, {scale.height_unit}" if drawn else "B"
+    title = f"B to its own scale, {scale.height_unit}"
     page.write(figure, words.left, head, title, bold=True)
-    top = words.top if drawn else head - page.BASELINE_IN
-    if drawn:
-        axes = page.area_axes(figure, page.TARGET_AREA, "target")
-        draw_target(axes, course, scale)
+    draw_target(page.area_axes(figure, page.TARGET_AREA, "target"), course, scale)
     for k, text in enumerate(target_lines(course, scale)):
-        artist = page.write(
-            figure, words.left, top - LINE_IN * (k + 1), text, size=page.SMALL
-        )
+        y = words.top - LINE_IN * (k + 1)
+        artist = page.write(figure, words.left, y, text, size=page.SMALL)
         page.fit(figure, artist, words.width, least_pt=page.SMALL)

@@ -88,8 +88,6 @@ def path_losses(
         line, frequency_hz, sea_fraction=sea_fraction, polarization=polarization
     )
     case = None if whole is None else _case(line, frequency_hz, whole)
-    if case is None and whole is not None:
-        reason = "no ground between the ends counts"
     free = free_space_loss_db(ray_length_m(line), frequency_hz=frequency_hz)
     return PathLosses(
         frequency_hz=frequency_hz,

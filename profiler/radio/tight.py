@@ -3,7 +3,7 @@
 The first Fresnel zone's radius grows like a square root from the ends, so what is left
 of the clearance is no quadratic inside a piece. Each piece gives its three samples and
 the vertex of the parabola through them; pieces that may hold the lowest place are then
-searched by golden section on the exact expression.
+searched by golden section, the clearance as a quadratic and the zone as it is.
 """
 
 import math
@@ -17,9 +17,11 @@ from profiler.radio.fresnel import fresnel_radius_m
 from profiler.sight.ground import Ground, quadratic
 from profiler.sight.line import Line
 
-#: Pieces whose quick lowest is this close to the overall one are searched [m]; the
-#: parabola misses less: half the zone's radius half a 100 m cell from an end at 1 GHz.
-SEARCH_WITHIN_M: Final = 3.0
+#: Largest error of the parabola through three samples of the zone's radius, as a share
+#: of their spread [1]: 0.14 for a square root from 0, 0.25 for a whole path in one piece.
+PARABOLA_MISS: Final = 0.3
+#: Room for rounding in that comparison [m].
+ROUNDING_M: Final = 1e-6
 #: Golden sections of a piece [1]: 0.618^40 of a 100 m cell is below a micrometre.
 SECTIONS: Final = 40
 GOLDEN: Final = (math.sqrt(5.0) - 1.0) / 2.0
@@ -73,8 +75,10 @@ def tight_places(
             u = np.where(fit.c > 0.0, -fit.b / (2.0 * fit.c), np.nan)
         u[~((u > 0.0) & (u < 1.0))] = np.nan
         low = np.fmin(np.min(first.left_m, axis=1), fit.at(u))
-        search = low <= np.min(low) + SEARCH_WITHIN_M
-        u[search] = _lowest_u(line, ground, search, criterion, wavelength_m)
+        miss = criterion.f1_fraction * parabola_miss(first.f1_m)
+        search = low - miss <= np.min(first.left_m) + ROUNDING_M
+        part = Ground(ground.dist_m[search], first.clear_m[search])
+        u[search] = _lowest_u(part, line.length_m, criterion, wavelength_m)
         there = np.isfinite(u)
         d, z = Ground(ground.dist_m[there], ground.height_m[there]).place(u[there])
         dist.append(d)
@@ -101,20 +105,27 @@ def _evaluate(
     return Tight(dist_m, ground_m, clear, f1, left)
 
 
+def parabola_miss(f1_m: FloatArray) -> FloatArray:
+    """(k,) bound on what the parabola through (k, 3) radii misses of the zone [m]."""
+    miss: FloatArray = PARABOLA_MISS * (np.max(f1_m, axis=1) - np.min(f1_m, axis=1))
+    return miss
+
+
 def _lowest_u(
-    line: Line,
-    ground: Ground,
-    search: np.ndarray,
-    criterion: Criterion,
-    wavelength_m: float,
+    clear: Ground, length_m: float, criterion: Criterion, wavelength_m: float
 ) -> FloatArray:
-    """Where within the chosen pieces least clearance is left, 0 to 1."""
-    part = Ground(ground.dist_m[search], ground.height_m[search])
+    """Where within pieces of clearance least of it is left, 0 to 1."""
+    fit = quadratic(clear.height_m)
+    start, step = clear.dist_m[:, 0], clear.dist_m[:, 2] - clear.dist_m[:, 0]
+    scale = criterion.f1_fraction * math.sqrt(wavelength_m / length_m)
 
     def left(u: FloatArray) -> FloatArray:
-        return _evaluate(line, *part.place(u), criterion, wavelength_m).left_m
+        dist = start + u * step
+        rest = np.maximum(length_m - dist, 0.0)
+        value: FloatArray = fit.at(u) - scale * np.sqrt(dist * rest)
+        return value
 
-    a, b = np.zeros(part.dist_m.shape[0]), np.ones(part.dist_m.shape[0])
+    a, b = np.zeros(start.shape), np.ones(start.shape)
     c, d = b - GOLDEN * (b - a), a + GOLDEN * (b - a)
     at_c, at_d = left(c), left(d)
     for _ in range(SECTIONS):

@@ -3,6 +3,7 @@
 import numpy as np
 from matplotlib.axes import Axes
 
+from profiler.model import BoolArray, FloatArray
 from profiler.output.figures import page
 from profiler.output.figures.course import Trace
 from profiler.output.figures.scale import Scale
@@ -42,17 +43,25 @@ def draw_cover(ax: Axes, trace: Trace, scale: Scale) -> None:
         zorder=page.Z_GROUND + 1,
         label="trees, buildings",
     )
-    # sides and top: where cover begins or ends the profile has two samples at one place
-    edge = np.where(covered, top, np.nan)
-    steps = np.flatnonzero(np.diff(covered.astype(np.int8)))
-    ax.plot(x, edge, color=page.COVER, lw=page.COVER_WIDTH, zorder=page.Z_EDGE)
-    for k in steps:
-        inside = k + 1 if covered[k + 1] else k
-        pair = [foot[inside], top[inside]]
-        ax.plot(
-            [x[inside]] * 2,
-            pair,
-            color=page.COVER,
-            lw=page.COVER_WIDTH,
-            zorder=page.Z_EDGE,
-        )
+    outlines = [_outline(x, foot, top, run) for run in _runs(covered)]
+    look = {"color": page.COVER, "lw": page.COVER_WIDTH, "zorder": page.Z_EDGE}
+    ax.plot(*np.hstack(outlines), **look)
+
+
+def _runs(covered: BoolArray) -> list[slice]:
+    edges = np.flatnonzero(np.diff(np.concatenate([[0], covered, [0]])))
+    pairs = zip(edges[::2].tolist(), edges[1::2].tolist(), strict=True)
+    return [slice(a, b) for a, b in pairs]
+
+
+def _outline(
+    x: FloatArray, foot: FloatArray, top: FloatArray, run: slice
+) -> FloatArray:
+    """(2, k) sides and top of one run, ending in a gap."""
+    xs, ys, feet = x[run], top[run], foot[run]
+    return np.array(
+        [
+            [xs[0], *xs, xs[-1], np.nan],
+            [feet[0], *ys, feet[-1], np.nan],
+        ]
+    )

@@ -5,9 +5,11 @@ from typing import Any, Final, Literal, NamedTuple
 import numpy as np
 from matplotlib.axes import Axes
 
+from profiler.model import Verdict
 from profiler.output.figures import page
 from profiler.output.figures.course import Course
 from profiler.output.figures.scale import Scale
+from profiler.output.told import radio_of
 
 #: Letters A and B stand so far from their mark [pt].
 LETTER_OFF: Final = 10.0
@@ -24,6 +26,8 @@ class Limits(NamedTuple):
 def needed_heights(course: Course) -> list[tuple[float, float]]:
     """Distance and height above sea level of the needed height at each end [m]."""
     line, found = course.line, []
+    if radio_of(line) is not None and line.verdict is not Verdict.BLOCKED:
+        return []  # a radio path's heights must meet its rule, not merely see
     ends = (
         (0.0, line.from_.ground_m, line.needed.from_agl_m),
         (line.path.length_m, line.to.ground_m, line.needed.to_agl_m),

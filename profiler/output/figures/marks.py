@@ -1,22 +1,25 @@
 """Which places of the answer get a disc, and where the discs stand."""
 
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from typing import Final
 
 import numpy as np
 
-from profiler.model import Place, Stretch
+from profiler.model import CoverKind, Place, Stretch
 from profiler.output.figures.course import Course
+from profiler.output.figures.zone import has_rule
+from profiler.output.told import radio_of
 
 #: Blocked stretches that get a disc when there are no more of them [1].
 MOST_STRETCHES: Final = 8
-#: Worst ones that get a disc when there are more: one row tells how many more [1].
-WORST_STRETCHES: Final = 7
+#: The same for a radio path, whose footer is longer [1].
+MOST_RADIO: Final = 6
 #: Places nearer than this are one place [m]; the record's last digit.
 SAME_M: Final = 0.001
 #: Letters of the discs that carry no number.
 FIRST_BLOCK: Final = "F"
 HORIZON: Final = "H"
+RULE: Final = "R"
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
@@ -24,19 +27,21 @@ class Mark:
     """One place that gets a disc and a row of the table."""
 
     symbol: str
-    """What stands in the disc: a number, F (first block) or H (horizon point)."""
+    """What stands in the disc: a number, F (first block), H (horizon) or R (rule)."""
     decides: bool
     """Whether it is the decisive point."""
     distance_m: float
     """From the eye's end [m]."""
     ground_m: float
-    """Ground there [m]."""
+    """Ground and cover there [m]."""
     margin_m: float
-    """Sight line minus ground [m]."""
+    """Sight line minus ground and cover [m]."""
     lat_deg: float
     lon_deg: float
     note: str
     """What the table says of it."""
+    is_cover: bool = False
+    """Whether trees or a building stand there."""
 
 
 def marks_of(course: Course) -> tuple[list[Mark], int]:
@@ -51,12 +56,14 @@ def marks_of(course: Course) -> tuple[list[Mark], int]:
     int
         Blocked stretches without a mark.
     """
-    line = course.line
+    line, radio = course.line, radio_of(course.line)
     numbered = list(enumerate(line.blocked_stretches, start=1))
+    most = MOST_STRETCHES if radio is None else MOST_RADIO
     shown = numbered
-    if len(numbered) > MOST_STRETCHES:
-        worst = sorted(numbered, key=lambda pair: pair[1].worst_margin_m)
-        shown = sorted(worst[:WORST_STRETCHES], key=lambda pair: pair[0])
+    if len(numbered) > most:
+        # one row tells how many more there are
+        worst = sorted(numbered, key=lambda pair: pair[1].worst_margin_m)[: most - 1]
+        shown = sorted(worst, key=lambda pair: pair[0])
     marks = [_of_stretch(course, number, s) for number, s in shown]
     if line.decisive is not None and not marks:
         marks.append(_of_place("1", line.decisive, "tightest"))
@@ -64,10 +71,29 @@ def marks_of(course: Course) -> tuple[list[Mark], int]:
     for symbol, place in others:
         if place is not None and not _is_marked(marks, place):
             marks.append(_of_place(symbol, place, _NOTES[symbol]))
+    if radio is not None and has_rule(radio):
+        marks = _with_rule(course, marks, radio.result.governing.at.place)
     return marks, len(numbered) - len(shown)
 
 
-_NOTES: Final = {FIRST_BLOCK: "first block", HORIZON: "horizon"}
+def _with_rule(course: Course, marks: list[Mark], place: Place) -> list[Mark]:
+    """The marks with the place where the rule leaves least: an old one or one more."""
+    for k, mark in enumerate(marks):
+        if abs(mark.distance_m - place.distance_m) <= SAME_M:
+            told = replace(mark, note=f"{mark.note}, rule" if mark.note else "rule")
+            return [*marks[:k], told, *marks[k + 1 :]]
+    # the place's own margin is that of the criterion's air; discs tell the stated air
+    sight = float(course.sight_m(np.array([place.distance_m]))[0])
+    margin = sight - place.ground_m - place.cover_m
+    ruled = _of_place(RULE, place, _NOTES[RULE])
+    return [*marks, replace(ruled, margin_m=margin)]
+
+
+_NOTES: Final = {
+    FIRST_BLOCK: "first block",
+    HORIZON: "horizon",
+    RULE: "rule tightest",
+}
 
 
 def _is_marked(marks: list[Mark], place: Place) -> bool:
@@ -83,8 +109,14 @@ def _of_place(symbol: str, place: Place, note: str) -> Mark:
         margin_m=place.margin_m,
         lat_deg=place.lat_deg,
         lon_deg=place.lon_deg,
-        note=note,
+        note=_note(note, place.cover_kind),
+        is_cover=place.cover_m > 0.0,
     )
+
+
+def _note(note: str, kind: CoverKind | None) -> str:
+    """What the table says of a place, with what stands there."""
+    return ", ".join(part for part in (note, kind and kind.value) if part)
 
 
 def _of_stretch(course: Course, number: int, stretch: Stretch) -> Mark:
@@ -100,7 +132,8 @@ def _of_stretch(course: Course, number: int, stretch: Stretch) -> Mark:
         margin_m=stretch.worst_margin_m,
         lat_deg=stretch.lat_deg,
         lon_deg=stretch.lon_deg,
-        note="",
+        note=_note("", stretch.cover_kind),
+        is_cover=stretch.cover_kind is not None,
     )
 
 

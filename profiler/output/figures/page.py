@@ -65,6 +65,8 @@ ZONE_WIDTH: Final = 1.6
 STIPPLE: Final = "......"
 COVER_WIDTH: Final = 0.9
 RULE_WIDTH: Final = 1.3
+#: Size of a dot on the ground [pt].
+DOT: Final = 5.0
 #: Size of ring A and square B, ticks and their distance to numbers [pt].
 MARKER: Final = 8.5
 TICK: Final = 3.0

@@ -8,8 +8,10 @@ from matplotlib.axes import Axes
 from profiler.model import BoolArray, FloatArray
 from profiler.output.figures import page
 from profiler.output.figures.course import Course, Trace, void_runs
+from profiler.output.figures.cover import draw_cover
 from profiler.output.figures.ends import Limits, draw_ends, needed_heights
 from profiler.output.figures.scale import Scale, nice_ticks, tick_texts
+from profiler.output.figures.zone import Zone
 
 #: The drawing may grow by this share of its range to hold the sea [1]; our choice.
 SEA_SHARE: Final = 0.8
@@ -19,6 +21,8 @@ RAY_SHARE: Final = 0.5
 ROOM_ABOVE: Final = 0.09
 ROOM_BELOW: Final = 0.09
 ROOM_FOR_WORDS: Final = 0.3
+#: Room below the drawing for the words of a radio path's rule [1 of range].
+ROOM_FOR_RULE: Final = 0.12
 #: Least range of heights on the drawing [m]; a flat field stays flat.
 LEAST_RANGE_M: Final = 8.0
 #: Depth of the hatching under unseen ground [1 of range].
@@ -29,11 +33,13 @@ LEVEL_WIDTH: Final = 0.5
 MOST_TICKS: Final = 6
 
 
-def limits_of(course: Course, trace: Trace) -> Limits:
+def limits_of(course: Course, trace: Trace, zone: Zone | None) -> Limits:
     """What the drawing must hold, and what it holds if that costs little."""
     line = course.line
     must = [
         *_finite(trace.paper_m),
+        *_finite(trace.paper_top_m),
+        *([] if zone is None else _zone_heights(course, zone)),
         line.from_.amsl_m,
         course.paper_at(line.aim_distance_m, line.aim_m),
         course.paper_at(line.path.length_m, line.to.amsl_m),
@@ -57,8 +63,17 @@ def limits_of(course: Course, trace: Trace) -> Limits:
     top = high + span * RAY_SHARE
     high = max([high, *(w for w in wishes if w <= top)])
     room = ROOM_FOR_WORDS if void_runs(course) else ROOM_ABOVE
+    below = ROOM_BELOW if zone is None else ROOM_FOR_RULE
     span = high - low
-    return Limits(low - ROOM_BELOW * span, high + room * span, has_sea)
+    return Limits(low - below * span, high + room * span, has_sea)
+
+
+def _zone_heights(course: Course, zone: Zone) -> list[float]:
+    """Lowest and highest height on paper of the zone and of the rule's line."""
+    heights = [zone.low_m, zone.high_m]
+    if zone.rule_m is not None:
+        heights.append(zone.rule_m)
+    return [k for z in heights for k in _finite(course.paper_m(zone.dist_m, z))]
 
 
 def _finite(values: FloatArray) -> list[float]:
@@ -67,7 +82,13 @@ def _finite(values: FloatArray) -> list[float]:
 
 
 def draw_profile(
-    ax: Axes, course: Course, trace: Trace, limits: Limits, scale: Scale
+    ax: Axes,
+    course: Course,
+    trace: Trace,
+    limits: Limits,
+    scale: Scale,
+    *,
+    ends: bool = True,
 ) -> Axes:
     """The profile of the answer.
 
@@ -83,16 +104,20 @@ def draw_profile(
         Heights on paper.
     scale : Scale
         Units.
+    ends : bool
+        Whether masts, ring A, square B and needed heights are drawn.
     """
     v = scale.height_unit_m
     ax.set_xlim(*scale.x_limits())
     ax.set_ylim(limits.low_m / v, limits.high_m / v)
     _levels(ax, course, limits, scale)
     _ground(ax, trace, limits, scale)
+    draw_cover(ax, trace, scale)
     for start, end in void_runs(course):
         _void(ax, course, limits, scale, (start, end))
     _rays(ax, course, limits, scale)
-    draw_ends(ax, course, limits, scale)
+    if ends:
+        draw_ends(ax, course, limits, scale)
     ax.set_xticks([])
     page.style_ticks(ax)
     return ax

@@ -13,6 +13,8 @@ from profiler.output.figures.course import Course, Trace, void_runs
 from profiler.output.figures.ends import Limits
 from profiler.output.figures.marks import Mark, spread
 from profiler.output.figures.scale import Scale, nice_ticks, tick_texts
+from profiler.output.figures.zone import RULE_LOOK, has_rule, left_over_m
+from profiler.output.told import radio_of
 
 #: The strip shows margins up to so many times the lowest one [1]; our choice.
 MARGIN_TIMES: Final = 8.0
@@ -35,8 +37,6 @@ SMALL_LETTERS: Final = 7.0
 #: Ring of the decisive disc and of the others [pt].
 RING_DECIDES: Final = 1.8
 RING: Final = 0.6
-#: Dot on the ground under a disc [pt].
-DOT: Final = 5.0
 
 
 def margin_limits(course: Course) -> tuple[float, float]:
@@ -46,10 +46,14 @@ def margin_limits(course: Course) -> tuple[float, float]:
     least = course.line.margin_m
     if least is None:
         least = float(known.min()) if known.size else 0.0
-    low = min(least, 0.0)
-    high = max(MARGIN_TIMES * abs(least), LEAST_MARGIN_M)
+    tight = [least]
+    radio = radio_of(course.line)
+    if radio is not None and has_rule(radio):
+        tight.append(radio.result.governing.margin_m)
+    low, large = min(*tight, 0.0), max(abs(t) for t in tight)
+    high = max(MARGIN_TIMES * min(abs(t) for t in tight), large, LEAST_MARGIN_M)
     if known.size:
-        high = min(high, max(float(known.max()), LEAST_MARGIN_M, abs(least)))
+        high = min(high, max(float(known.max()), LEAST_MARGIN_M, large))
     room = ROOM * (high - low)
     return low - room, high + room
 
@@ -89,6 +93,9 @@ def draw_strip(ax: Axes, course: Course, trace: Trace, scale: Scale) -> Axes:
         )
     ax.axhline(0.0, color=page.SIGHT, lw=ZERO, zorder=page.Z_EDGE)
     ax.plot(x, within, color=page.EDGE, lw=CURVE, zorder=page.Z_RAY, label="margin")
+    left = left_over_m(course, trace)
+    if left is not None:
+        ax.plot(x, left / v, zorder=page.Z_RAY, label="left by the rule", **RULE_LOOK)
     ticks = nice_ticks(low / v, high / v, MOST_MARGINS)
     ax.set_yticks(ticks, tick_texts(ticks))
     places = nice_ticks(0.0, scale.length_m / u, MOST_DISTANCES)
@@ -108,7 +115,7 @@ def draw_lane(
     figure: Figure, course: Course, marks: list[Mark], limits: Limits, scale: Scale
 ) -> list[Ellipse]:
     """Discs between profile and strip, each with a line to its ground and margin."""
-    wanted = [_x_in(mark, scale) for mark in marks]
+    wanted = leaders_in(marks, scale)
     lane = page.LANE_AREA
     half = DISC_IN / 2.0
     placed = spread(wanted, DISC_GAP_IN, lane.left + half, lane.right - half)
@@ -125,10 +132,9 @@ def draw_lane(
     return discs
 
 
-def _x_in(mark: Mark, scale: Scale) -> float:
-    low, high = scale.x_limits()
-    share = (mark.distance_m / scale.distance_unit_m - low) / (high - low)
-    return page.LANE_AREA.left + share * page.LANE_AREA.width
+def leaders_in(marks: list[Mark], scale: Scale) -> list[float]:
+    """Where the discs' places stand on the page [in]."""
+    return [scale.x_in(mark.distance_m, page.LANE_AREA) for mark in marks]
 
 
 def _leader(figure: Figure, corners: list[tuple[float, float]]) -> None:
@@ -150,7 +156,7 @@ def _dot(figure: Figure, x_in: float, y_in: float) -> None:
             [x_in / page.PAGE_IN[0]],
             [y_in / page.PAGE_IN[1]],
             marker="o",
-            ms=DOT,
+            ms=page.DOT,
             mfc=page.DISC,
             mec=page.EDGE,
             mew=RING,
@@ -161,7 +167,13 @@ def _dot(figure: Figure, x_in: float, y_in: float) -> None:
 
 
 def draw_disc(
-    figure: Figure, x_in: float, y_in: float, mark: Mark, *, size_in: float = DISC_IN
+    figure: Figure,
+    x_in: float,
+    y_in: float,
+    mark: Mark,
+    *,
+    size_in: float = DISC_IN,
+    ring: float = RING_DECIDES,
 ) -> Ellipse:
     """A disc with its number; a letter stands in an open one."""
     width, height = page.PAGE_IN
@@ -172,7 +184,7 @@ def draw_disc(
         size_in / height,
         facecolor=page.DISC if numbered else page.PAPER,
         edgecolor=page.EDGE if numbered else page.DISC,
-        lw=RING_DECIDES if mark.decides or not numbered else RING,
+        lw=ring if mark.decides or not numbered else RING,
         zorder=page.Z_MARK,
         transform=figure.transFigure,
     )

@@ -1,27 +1,26 @@
-"""The words around the drawings: ends, key, table of discs, needed heights, footer."""
+"""The words around the drawings: headline, both ends, table of discs."""
 
 from collections.abc import Sequence
 from typing import Final
 
 from matplotlib.figure import Figure
 
-from profiler.model import EndReport, SightLine, Verdict
+from profiler.model import EndReport, SightLine
 from profiler.output.figures import page
 from profiler.output.figures.marks import Mark
 from profiler.output.figures.scale import Scale
 from profiler.output.figures.strip import draw_disc
-from profiler.output.numbers import DOWN, UP, latitude, longitude, ratio
+from profiler.output.numbers import latitude, longitude
 
-#: Characters of a name before it is cut, of a file's name, and of its hash [1].
+#: Characters of a name before it is cut [1].
 NAME_MOST: Final = 40
-FILE_MOST: Final = 48
-HASH_SHOWN: Final = 8
-#: Length of a sample line in the key, its gap to the words, and between entries [in].
-SAMPLE_IN: Final = 0.3
-KEY_GAP_IN: Final = 0.06
-KEY_APART_IN: Final = 0.24
-#: Diameter of a disc in the table [in].
-TABLE_DISC_IN: Final = 0.138
+#: Least distance between the words of both ends [in].
+ENDS_GAP_IN: Final = 0.06
+#: Diameter of a disc in the table [in] and its ring [pt]: rings of two rows are apart.
+TABLE_DISC_IN: Final = 0.122
+TABLE_RING: Final = 0.9
+#: Left edge of the discs from the table's own [in].
+DISC_END_IN: Final = 0.13
 #: Middle of small letters above their baseline [1 of their size].
 MIDDLE: Final = 0.36
 #: Left edges of the table's columns from its own [in]; numbers end at theirs.
@@ -34,8 +33,6 @@ NOTE_IN: Final = 4.54
 ROW_IN: Final = 0.1465
 #: Distance between the lines of a broken headline [1 of its size].
 HEAD_STEP: Final = 1.25
-#: Posts this far apart and more are told in whole metres [m].
-WHOLE_POSTS_M: Final = 9.5
 
 
 def short(text: str, most: int) -> str:
@@ -98,7 +95,7 @@ def end_text(end: EndReport, what: str, scale: Scale) -> str:
 
 def draw_ends(figure: Figure, line: SightLine, scale: Scale) -> None:
     """Names of both ends above their side of the profile, heights below the name."""
-    area, half = page.ENDS_AREA, page.ENDS_AREA.width / 2.0 - KEY_GAP_IN
+    area, half = page.ENDS_AREA, page.ENDS_AREA.width / 2.0 - ENDS_GAP_IN
     pairs = zip(("A", "B"), names(line), (line.from_, line.to), strict=True)
     for letter, name, end in pairs:
         left = letter == "A"
@@ -126,10 +123,13 @@ _COLUMNS: Final = (
 
 
 def _row(figure: Figure, y_in: float, texts: Sequence[str], color: str) -> None:
+    area = page.TABLE_AREA
     for text, (x, side) in zip(texts, _COLUMNS, strict=True):
         if text:
-            at = page.TABLE_AREA.left + x
-            page.write(figure, at, y_in, text, size=page.SMALL, ha=side, color=color)
+            at, look = area.left + x, {"size": page.SMALL, "color": color}
+            artist = page.write(figure, at, y_in, text, ha=side, **look)
+            if x == NOTE_IN:
+                page.fit(figure, artist, area.width - x, least_pt=page.SMALL)
 
 
 def mark_texts(mark: Mark, scale: Scale) -> tuple[str, str, str, str, str]:
@@ -151,64 +151,17 @@ def draw_table(
     """One row for each disc: where it is, how far from the line, coordinates."""
     area = page.TABLE_AREA
     y = area.top - page.SMALL / page.PT_PER_IN
-    heads = (scale.distance_unit, "ground stands", "latitude", "longitude", "")
+    what = "top of cover" if any(m.is_cover for m in marks) else "ground"
+    heads = (scale.distance_unit, f"{what} stands", "latitude", "longitude", "")
     _row(figure, y, heads, page.QUIET)
     for mark in marks:
         y -= ROW_IN
         _row(figure, y, mark_texts(mark, scale), page.EDGE)
         middle = y + page.SMALL / page.PT_PER_IN * MIDDLE
-        x = area.left + TABLE_DISC_IN
-        draw_disc(figure, x, middle, mark, size_in=TABLE_DISC_IN)
+        x = area.left + DISC_END_IN
+        draw_disc(figure, x, middle, mark, size_in=TABLE_DISC_IN, ring=TABLE_RING)
     if left_out:
         y -= ROW_IN
         least = max(m.margin_m for m in marks if m.symbol.isdigit())
         text = f"and {left_out} more, none over {scale.show.height(-least)}"
         page.write(figure, area.left + GROUND_IN, y, text, size=page.SMALL)
-
-
-def needed_lines(line: SightLine, scale: Scale) -> list[str]:
-    """What would just clear the line, one thing a line, rounded to the safe side."""
-    show, needed = scale.show, line.needed
-    blocked = line.verdict == Verdict.BLOCKED
-    lines = []
-    for letter, agl, end in (
-        ("A", needed.from_agl_m, line.from_),
-        ("B", needed.to_agl_m, line.to),
-    ):
-        if agl is not None:
-            now = "" if end.agl_m is None else f" (now {show.given(end.agl_m)})"
-            lines.append(f"{letter} at {show.height(agl, rounding=UP)}{now}")
-    if blocked and needed.both_extra_m is not None:
-        lines.append(f"both {show.height(needed.both_extra_m, rounding=UP)} higher")
-    if needed.dem_bias_m is not None:
-        lower = needed.dem_bias_m < 0.0
-        size = show.height(abs(needed.dem_bias_m), rounding=UP if lower else DOWN)
-        way = "lower" if lower else "higher, at most"
-        lines.append(f"all ground between {size} {way}")
-    if needed.kr is not None and needed.ke is not None:
-        least = "" if blocked else "at least "
-        kr, ke = (ratio(v, rounding=UP) for v in (needed.kr, needed.ke))
-        lines.append(f"air of {least}kr {kr} = ke {ke}".replace("-", "−"))
-    return lines
-
-
-_NEEDED_HEADS: Final = {
-    Verdict.BLOCKED: "each of these alone clears the line",
-    Verdict.CLEAR: "each of these alone still clears",
-    Verdict.UNDETERMINED: "each still clears the known ground",
-}
-
-
-def draw_needed(figure: Figure, line: SightLine, scale: Scale) -> None:
-    """Needed heights at both ends and what else would do."""
-    area = page.NEEDED_AREA
-    lines = needed_lines(line, scale)
-    if not lines:
-        lines = ["nothing short of other stations"]
-    head = _NEEDED_HEADS[line.verdict]
-    y = area.top - page.SMALL / page.PT_PER_IN
-    page.write(figure, area.left, y, head, size=page.SMALL, color=page.QUIET)
-    for text in lines:
-        y -= ROW_IN
-        artist = page.write(figure, area.left, y, text, size=page.SMALL)
-        page.fit(figure, artist, area.width, least_pt=page.SMALL)
