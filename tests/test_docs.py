@@ -20,13 +20,15 @@ from profiler.cli.main import COMMANDS
 from profiler.cli.profile import EXIT_BY_VERDICT
 from profiler.constants import VERSION
 from profiler.model import Air, Point, Station
+from tests.asking import GIVEN, HIDDEN
+from tests.asking import run as run_command
 
 #: Exit status of a command line that click refuses; click's own.
 EXIT_USAGE = 2
 #: The sample that the pages' questions are asked on.
 UPLAND = ROOT / "sample_dem" / "upland.tif"
 #: Rooms whose notes reach the record or the inspection sheet.
-NOTING_ROOMS = ("terrain", "shapes", "sight", "output")
+NOTING_ROOMS = ("terrain", "shapes", "sight", "radio", "output")
 
 ALL_BLOCKS = [block for page in pages() for block in blocks(page)]
 CONSOLE = [block for block in ALL_BLOCKS if block.language == "console"]
@@ -166,8 +168,23 @@ def test_record_page_lists_every_field_and_no_other() -> None:
             air=Air(ke=4 / 3),
         ),
     ]
+    radio = ("--frequency", "400MHz", "--rule-set", "p530-temperate")
+    trees = ("--canopy", "15m", "--growth", "0.4m", "--years", "3")
+    beside = ("--from", "Skarvel", "--to", "Vennick", "--from-height", "45m")
+    records = [
+        *(answer.record() for answer in answers),
+        *(
+            json.loads(run_command(name, *GIVEN, *asked, *more, "--json", "-").out)
+            for name, asked, more in (
+                ("profile", (*beside, "--to-height", "10m"), radio),
+                ("profile", HIDDEN, trees),
+                ("masts", HIDDEN, radio),
+                ("diffraction", HIDDEN, radio[:2]),
+            )
+        ),
+    ]
     text = page("docs/record.md").split("## Codes")[0]
-    real = set().union(*(keys_of(a.record()) for a in answers))
+    real = set().union(*(keys_of(values) for values in records))
     listed = set(first_column(text))
     inner = {"code", "text", "version"}  # of notes and software, named in their rows
     assert listed == real - inner

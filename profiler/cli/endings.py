@@ -2,7 +2,9 @@
 
 import contextlib
 import os
+import signal
 import sys
+import threading
 from collections.abc import Iterator
 from typing import Final
 
@@ -12,6 +14,8 @@ from profiler.errors import ProfilerError
 
 #: Exit status of bad input or a bad elevation file; the contract of docs/commands.md.
 EXIT_BAD_INPUT: Final = 3
+#: Exit status of a run that was asked to end; as a shell reports SIGTERM.
+EXIT_ENDED: Final = 143
 #: Exit status of a run stopped by Ctrl-C; as a shell reports SIGINT.
 EXIT_STOPPED: Final = 130
 #: Exit status when the reader of the output went away; as a shell reports SIGPIPE.
@@ -27,6 +31,8 @@ def plain_endings() -> Iterator[None]:
     click.exceptions.Exit
         With the status, for click to leave by.
     """
+    # an end asked for from outside unwinds like any other: no file stays half written
+    before = signal.signal(signal.SIGTERM, _end) if _in_main_thread() else None
     try:
         yield
     except ProfilerError as error:
@@ -44,6 +50,18 @@ def plain_endings() -> Iterator[None]:
         )
         click.echo(f"Error: {about}{error.strerror or error}.", err=True)
         raise click.exceptions.Exit(EXIT_BAD_INPUT) from error
+    finally:
+        if before is not None:
+            signal.signal(signal.SIGTERM, before)
+
+
+def _in_main_thread() -> bool:
+    return threading.current_thread() is threading.main_thread()
+
+
+def _end(number: int, frame: object) -> None:
+    del number, frame
+    raise SystemExit(EXIT_ENDED)
 
 
 def silence() -> None:

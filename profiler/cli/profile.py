@@ -1,5 +1,6 @@
 """``overbrow profile``: the main job, one question answered."""
 
+import logging
 from collections.abc import Callable
 from pathlib import Path
 from typing import TYPE_CHECKING, Any, Final
@@ -184,6 +185,8 @@ def tell(answer: Answer, options: Options) -> None:
         text = check_points_text(answer, name, show_in=unit)
         wrote(options["check_points"], lambda p: write_text(p, text))
     if options["figure"] is not None:
+        # a plotting library without a cache of its own has nothing to tell a planner
+        logging.getLogger("matplotlib").setLevel(logging.ERROR)
         from profiler.output.figure import save_figure  # matplotlib: 0.6 s
 
         figure = answer.figure(draw=options["draw"], show_in=options["show_in"])

@@ -56,6 +56,7 @@ class SectionCommand(click.Command):
                 from profiler.cli.quantities import bare_k_message
 
                 raise click.UsageError(bare_k_message(), ctx)
+        self._refuse_repeats(ctx, args)
         try:
             return super().parse_args(ctx, args)
         except click.NoSuchOption as error:
@@ -66,6 +67,16 @@ class SectionCommand(click.Command):
             if "unexpected extra argument" in error.message:
                 raise click.UsageError(_extra_arguments(given, error), ctx) from error
             raise
+
+    def _refuse_repeats(self, ctx: click.Context, args: list[str]) -> None:
+        """Refuse an option given twice, of which click would keep the last."""
+        for param in self.get_params(ctx):
+            if not isinstance(param, click.Option) or param.multiple or param.is_flag:
+                continue
+            name = param.opts[0]
+            if sum(arg == name or arg.startswith(f"{name}=") for arg in args) > 1:
+                msg = f"{name} stands twice. Give one; ask again for another."
+                raise click.UsageError(msg, ctx)
 
 
 def _extra_arguments(given: list[str], error: click.UsageError) -> str:

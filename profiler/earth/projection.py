@@ -2,7 +2,7 @@
 
 import math
 import re
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from functools import lru_cache
 
 import numpy as np
@@ -119,6 +119,33 @@ class Projector:
             lon_deg = _near(lon_deg, wanted, TURN_DEG)
         return lat_deg, lon_deg
 
+    def settled_at(self, x: float, y: float) -> "Projector":
+        """The same with the one datum shift that serves a place in the CRS.
+
+        Where several shifts are known the library picks one for each point, and a path
+        over the border of two would jump by metres. One file keeps one shift.
+
+        Parameters
+        ----------
+        x, y : float [the CRS's unit]
+            Easting and northing, or longitude and latitude, of the place.
+        """
+        used = self._used_at(*self.to_wgs84(np.array([x]), np.array([y])))
+        if used is None:
+            return self
+        return replace(self, transformer=used, ballpark=_says_ballpark(used))
+
+    def _used_at(self, lat_deg: FloatArray, lon_deg: FloatArray) -> Transformer | None:
+        """The shift that the library picks at a place; None where it has no choice."""
+        if self.transformer is None:
+            return None
+        self.to_crs(lat_deg, lon_deg)
+        try:
+            return self.transformer.get_last_used_operation()
+        except ProjError:
+            # with one shift only there is no choice to report
+            return None
+
     def is_ballpark_at(self, lat_deg: float, lon_deg: float) -> bool:
         """Whether no datum shift to WGS84 is known at one place.
 
@@ -134,13 +161,8 @@ class Projector:
         """
         if self.transformer is None or self.ballpark:
             return self.ballpark
-        self.to_crs(np.array([lat_deg]), np.array([lon_deg]))
-        try:
-            used = self.transformer.get_last_used_operation()
-        except ProjError:
-            # with one shift only there is no choice to report, and it is known
-            return False
-        return _says_ballpark(used)
+        used = self._used_at(np.array([lat_deg]), np.array([lon_deg]))
+        return used is not None and _says_ballpark(used)
 
 
 @lru_cache(maxsize=KEPT_READY)

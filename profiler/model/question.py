@@ -2,9 +2,20 @@
 
 import math
 from dataclasses import dataclass
+from numbers import Real
 
 from profiler.constants import KR_LIGHT
 from profiler.errors import InputError
+
+
+def _check_numbers(what: str, *values: object) -> None:
+    """Refuse text and truth values where a number is needed."""
+    for value in values:
+        if value is not None and (
+            isinstance(value, bool) or not isinstance(value, Real)
+        ):
+            msg = f"{what} needs numbers, not {value!r}."
+            raise InputError(msg)
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
@@ -18,6 +29,7 @@ class Point:
 
     def __post_init__(self) -> None:
         """Refuse what is no place and bring the longitude into ±180."""
+        _check_numbers("A point", self.lat_deg, self.lon_deg)
         if not (math.isfinite(self.lat_deg) and math.isfinite(self.lon_deg)):
             msg = (
                 f"A point needs two finite numbers, not {self.lat_deg}, {self.lon_deg}."
@@ -59,7 +71,9 @@ class Station:
                 "(amsl_m), not both and not neither."
             )
             raise InputError(msg)
-        for value in (self.agl_m, self.amsl_m, self.surveyed_ground_m):
+        heights = (self.agl_m, self.amsl_m, self.surveyed_ground_m)
+        _check_numbers("A station", *heights)
+        for value in heights:
             if value is not None and not math.isfinite(value):
                 msg = f"A height must be a finite number of metres, not {value}."
                 raise InputError(msg)
@@ -88,6 +102,7 @@ class Air:
 
     def __post_init__(self) -> None:
         """Refuse two statements of one thing, and numbers that are none."""
+        _check_numbers("The air", self.ke, self.kr, self.n_gradient_per_km)
         given = [v for v in (self.ke, self.kr, self.n_gradient_per_km) if v is not None]
         if len(given) > 1:
             msg = "Give one of ke, kr and the refractivity gradient, not several."

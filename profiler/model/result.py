@@ -120,6 +120,8 @@ class Needed:
     """Least coefficient of refraction [1]."""
     dem_bias_m: float | None
     """Largest shift of all ground between the ends [m]; negative = lower."""
+    dem_bias_at_m: float | None
+    """The place that sets it, from the eye's end [m]."""
     from_stretch: int | None
     """Number, from 1, of the blocked stretch that sets ``from_agl_m``."""
     to_stretch: int | None
@@ -168,6 +170,8 @@ class OtherGround:
 
     verdict: Verdict
     margin_m: float | None
+    at_m: float | None
+    """Where that margin is, from the eye's end [m]."""
     shown: Shown
     from_ground_m: float | None
     to_ground_m: float | None

@@ -8,6 +8,10 @@ from profiler.output.numbers import DOWN, UP, Show, ratio
 #: Coefficient of refraction that clear days exceed too seldom to count on [1];
 #: radio's normal 4/3, which light reaches only in strong inversions; our choice.
 KR_TO_COUNT_ON: Final = 0.25
+#: Coefficient of refraction of a ray as curved as the earth: a duct [1].
+KR_DUCT: Final = 1.0
+#: Ground this near to an end is told by its distance from it [m]; our choice.
+NEAR_M: Final = 200.0
 #: Coefficient of refraction below which no kilometres-long ray was ever bent [1]; our
 #: choice: radio's rarest ke of 1/2 is kr −1.
 KR_OUT_OF_REACH: Final = -1.0
@@ -41,10 +45,13 @@ def openers(values: Json, show: Show) -> list[str]:
     if needed["dem_bias_m"] is not None:
         lower = show.height(-needed["dem_bias_m"], rounding=UP)
         other.append(f"all ground between {lower} lower")
-    if needed["kr"] is not None:
+    if needed["kr"] is not None and needed["kr"] < KR_DUCT:
         other.append(_kr_text(needed["kr"]))
     if other:
         lines.append(("or " if lines else "") + "; or ".join(other))
+    if lines and values["path"]["void_m"] > 0.0:
+        length = show.run(values["path"]["void_m"])
+        lines.append(f"over known ground only: {length} of the path have none")
     return lines or ["nothing short of other stations"]
 
 
@@ -77,10 +84,21 @@ def closers(values: Json, show: Show) -> list[str]:
     parts = []
     if needed["dem_bias_m"] is not None and needed["dem_bias_m"] > 0.0:
         higher = show.height(needed["dem_bias_m"], rounding=DOWN)
-        parts.append(f"all ground between more than {higher} higher")
+        parts.append(f"{_tightest_ground(values, show)} more than {higher} higher")
     if needed["kr"] is not None and needed["kr"] > KR_OUT_OF_REACH:
-        parts.append(f"kr below {ratio(needed['kr'], 2, rounding=UP)}")
+        parts.append(f"kr below {ratio(needed['kr'], 3, rounding=UP)}")
     return ["; or ".join(parts)] if parts else []
+
+
+def _tightest_ground(values: Json, show: Show) -> str:
+    """The ground that the least rise closes: far off, or at an end's own feet."""
+    at, length = values["needed"]["dem_bias_at_m"], values["path"]["distance_m"]
+    eye, name = names_of(values)
+    if at < NEAR_M:
+        return f"ground {show.run(at)} from {eye}"
+    if at > length - NEAR_M:
+        return f"ground {show.run(length - at)} from {name}"
+    return f"ground at {show.distance(at)}"
 
 
 def enough(values: Json, show: Show) -> list[str]:

@@ -22,6 +22,11 @@ def printable(text: str) -> str:
     return " ".join("".join(s if s.isprintable() else " " for s in text).split())
 
 
+def storable(text: str) -> str:
+    """Text that UTF-8 can hold; a name on disk may be bytes in no encoding."""
+    return text.encode("utf-8", errors="replace").decode("utf-8")
+
+
 def capital(text: str) -> str:
     """Text that begins a sentence."""
     return text[:1].upper() + text[1:]

@@ -2,10 +2,11 @@
 
 from typing import Any
 
+from profiler.output.naming import storable
 from profiler.output.rounding import db, deg, metres, ratio
 from profiler.radio.answer import RadioAnswer
-from profiler.radio.assess import CriterionResult, RadioResult, RuleState, TightPlace
-from profiler.radio.criteria import Criterion
+from profiler.radio.assess import CriterionResult, RadioResult, TightPlace
+from profiler.radio.criteria import Criterion, RuleSet
 from profiler.radio.sheet import PathSheet
 from profiler.radio.side import SidePlace
 
@@ -25,12 +26,11 @@ def radio_record(radio: RadioAnswer) -> Json:
         Metres with 3 decimals, degrees with 9, ratios with 6, decibels with 3.
     """
     result = radio.result
-    has_rule = result.rule.name != "none"
     return {
         "frequency_hz": result.frequency_hz,
         "wavelength_m": ratio(result.wavelength_m),
-        "state": _state(result, has_rule=has_rule),
-        "rule": {"name": result.rule.name, "source": result.rule.source},
+        "state": result.state.value,
+        "rule": rule_record(result.rule),
         "criteria": [_criterion_result(r) for r in result.results],
         "governing": criterion_record(result.governing.criterion),
         "obstacles": [_tight(t) for t in result.obstacles],
@@ -49,10 +49,9 @@ def criterion_record(criterion: Criterion) -> Json:
     }
 
 
-def _state(result: RadioResult, *, has_rule: bool) -> str:
-    if not has_rule and result.state is not RuleState.BLOCKED:
-        return RuleState.NO_RULE.value
-    return result.state.value
+def rule_record(rule: RuleSet) -> Json:
+    """Where a rule comes from, as both records write it."""
+    return {"name": storable(rule.name), "source": storable(rule.source)}
 
 
 def _criterion_result(result: CriterionResult) -> Json:
@@ -72,6 +71,8 @@ def _tight(tight: TightPlace) -> Json:
         "lon_deg": deg(place.lon_deg),
         "ground_m": metres(place.ground_m),
         "cover_m": metres(place.cover_m),
+        "cover_name": storable(place.cover_name),
+        "cover_kind": None if place.cover_kind is None else place.cover_kind.value,
         "clearance_m": metres(place.margin_m),
         "f1_m": metres(tight.f1_m),
         "f1_share": ratio(tight.share),

@@ -2,8 +2,9 @@
 
 from typing import Any, Final
 
-from profiler.output.naming import capital, names_of
+from profiler.output.naming import capital, names_of, printable
 from profiler.output.numbers import DOWN, UP, Show, place, ratio
+from profiler.output.standing import standing
 
 #: Width of a criterion in the list [characters].
 CRITERION: Final = 24
@@ -54,6 +55,8 @@ def radio_first_line(values: Json, show: Show) -> tuple[str, str] | None:
         "met": _met,
         "not_met": _not_met,
         "no_rule": _no_rule,
+        # without known ground under the line the usual words name the place
+        "undetermined": _cannot_say if values["verdict"] == "clear" else None,
     }.get(values["radio"]["state"])
     return None if tell is None else tell(values, show)
 
@@ -64,9 +67,10 @@ def _blocked(values: Json, show: Show) -> tuple[str, str]:
     over, where = show.height(-at["margin_m"]), show.distance(at["distance_m"])
     loss = values["radio"]["loss"]["diffraction_db"]
     told = "" if loss is None else f"; diffraction loss {loss:.1f} dB"
+    there = standing(at)
     return (
         f"BLOCKED. {capital(eye)} does not see {name}:",
-        f" ground at {where} stands {over} above the line{told}.",
+        f" {there.name} at {where} {there.verb('stand')} {over} above the line{told}.",
     )
 
 
@@ -76,8 +80,23 @@ def _asks(result: Json, show: Show) -> str:
 
 
 def _governing(values: Json) -> Json:
-    found: Json = min(values["radio"]["criteria"], key=lambda r: r["margin_m"])
+    radio = values["radio"]
+    found: Json = next(r for r in radio["criteria"] if _is(r, radio["governing"]))
     return found
+
+
+def _is(result: Json, criterion: Json) -> bool:
+    return all(result[key] == value for key, value in criterion.items())
+
+
+def _cannot_say(values: Json, show: Show) -> tuple[str, str]:
+    length = show.run(values["path"]["void_m"])
+    highest = show.given(values["settings"]["void_below_m"])
+    return (
+        "CANNOT SAY. Known ground meets the rule;",
+        f" {length} of path have no ground, and ground up to {highest} there could "
+        "break it.",
+    )
 
 
 def _line_is(result: Json, show: Show) -> str:
@@ -105,7 +124,11 @@ def _not_met(values: Json, show: Show) -> tuple[str, str]:
     if not clear:
         over = show.height(-result["at"]["clearance_m"])
         where = show.distance(result["at"]["distance_m"])
-        line = f"At ke {ke_words(result['ke'])} ground at {where} is {over} too high;"
+        there = standing(result["at"])
+        line = (
+            f"At ke {ke_words(result['ke'])} {there.name} at {where} "
+            f"{there.verb('stand')} {over} above the line;"
+        )
     return (
         f"RULE NOT MET. {line}",
         f" {criterion_text(result)} asks for {_asks(result, show)}: {short} short.",
@@ -122,9 +145,9 @@ def _no_rule(values: Json, show: Show) -> tuple[str, str]:
 
 
 def _spare(result: Json, show: Show) -> str:
-    if result["margin_m"] < 0.0:
+    if not result["met"]:
         return f"{show.height(-result['margin_m'], rounding=UP)} short"
-    return f"{show.height(result['margin_m'], rounding=DOWN)} to spare"
+    return f"{show.height(max(result['margin_m'], 0.0), rounding=DOWN)} to spare"
 
 
 def rule_lines(values: Json, show: Show) -> list[str]:
@@ -133,14 +156,15 @@ def rule_lines(values: Json, show: Show) -> list[str]:
     governing = radio["governing"]
     lines = []
     for result in radio["criteria"]:
-        only = {k: result[k] for k in ("ke", "f1_fraction", "extra_m")}
-        ends = "   governs" if only == governing and len(radio["criteria"]) > 1 else ""
+        governs = _is(result, governing) and len(radio["criteria"]) > 1
+        ends = "   governs" if governs else ""
         at = show.distance(result["at"]["distance_m"])
         lines.append(
             f"{criterion_text(result):<{CRITERION}}{_spare(result, show)} at {at}{ends}"
         )
     if radio["rule"]["name"] not in ("none", "given"):
-        lines.append(f"{radio['rule']['name']}: {radio['rule']['source']}")
+        rule = radio["rule"]
+        lines.append(printable(f"{rule['name']}: {rule['source']}"))
     found = radio["obstruction"]
     if found is not None and radio["rule"]["name"].startswith("p530"):
         run = f"{show.bare_distance(found['start_m'])}-{show.distance(found['end_m'])}"

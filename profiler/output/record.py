@@ -21,6 +21,7 @@ from profiler.model import (
     Target,
     VoidStretch,
 )
+from profiler.output.naming import storable
 from profiler.output.rounding import M_DECIMALS, deg, metres, ratio
 from profiler.output.standing import cover_rows
 from profiler.output.told import growth_of, radio_of
@@ -63,6 +64,7 @@ def record(line: SightLine) -> Json:
             "back_azimuth_deg": deg(line.path.back_azimuth_deg),
             "samples": int(line.profile.dist_m.size),
             "void_samples": int(np.count_nonzero(np.isnan(line.profile.ground_m))),
+            "void_m": metres(_void_length(line)),
         },
         "angles": {
             "from_elevation_deg": deg(line.from_elevation_deg),
@@ -95,6 +97,15 @@ def record_text(line: SightLine) -> str:
     return json.dumps(values, indent=1, ensure_ascii=False, allow_nan=False) + "\n"
 
 
+def _void_length(line: SightLine) -> float:
+    """Length of path without ground [m]."""
+    first = line.profile.piece_start
+    void = np.isnan(line.profile.ground_m[first + 1])
+    return float(
+        np.sum(line.profile.dist_m[first + 2][void] - line.profile.dist_m[first][void])
+    )
+
+
 def _place(place: Place | None) -> Json | None:
     return None if place is None else _place_fields(place)
 
@@ -106,7 +117,7 @@ def _place_fields(place: Place) -> Json:
         "lon_deg": deg(place.lon_deg),
         "ground_m": metres(place.ground_m),
         "cover_m": metres(place.cover_m),
-        "cover_name": _text(place.cover_name),
+        "cover_name": storable(place.cover_name),
         "cover_kind": None if place.cover_kind is None else place.cover_kind.value,
         "sight_m": metres(place.sight_m),
         "margin_m": metres(place.margin_m),
@@ -127,7 +138,7 @@ def _stretch(stretch: Stretch) -> Json:
         "worst_at_m": metres(stretch.worst_at_m),
         "lat_deg": deg(stretch.lat_deg),
         "lon_deg": deg(stretch.lon_deg),
-        "cover_name": _text(stretch.cover_name),
+        "cover_name": storable(stretch.cover_name),
         "cover_kind": None if stretch.cover_kind is None else stretch.cover_kind.value,
     }
 
@@ -156,6 +167,7 @@ def _needed(line: SightLine) -> Json:
         "ke": ratio(needed.ke),
         "kr": ratio(needed.kr),
         "dem_bias_m": metres(needed.dem_bias_m),
+        "dem_bias_at_m": metres(needed.dem_bias_at_m),
         "from_stretch": needed.from_stretch,
         "to_stretch": needed.to_stretch,
         "both_stretch": needed.both_stretch,
@@ -181,7 +193,7 @@ def _terrain(line: SightLine) -> Json:
     return {
         "files": [
             {
-                "name": _text(f.name),
+                "name": storable(f.name),
                 "bytes": f.bytes,
                 "sha256": f.sha256,
                 "crs": f.crs,
@@ -198,7 +210,7 @@ def _terrain(line: SightLine) -> Json:
 
 def _end(end: EndReport) -> Json:
     return {
-        "name": _text(end.name),
+        "name": storable(end.name),
         "lat_deg": deg(end.lat_deg),
         "lon_deg": deg(end.lon_deg),
         "ground_m": metres(end.ground_m),
@@ -216,6 +228,7 @@ def _other(line: SightLine) -> Json | None:
     return {
         "verdict": other.verdict.value,
         "margin_m": metres(other.margin_m),
+        "at_m": metres(other.at_m),
         "shown": other.shown.value,
         "from_ground_m": metres(other.from_ground_m),
         "to_ground_m": metres(other.to_ground_m),
@@ -237,12 +250,7 @@ def _void(void: VoidStretch | None) -> Json | None:
 
 
 def _note(note: Note) -> Json:
-    return {"code": note.code, "text": _text(note.text)}
-
-
-def _text(text: str) -> str:
-    """Text that UTF-8 can hold; a name on disk may be bytes in no encoding."""
-    return text.encode("utf-8", errors="replace").decode("utf-8")
+    return {"code": note.code, "text": storable(note.text)}
 
 
 def _radio(line: SightLine) -> Json:

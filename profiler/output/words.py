@@ -5,7 +5,7 @@ from collections.abc import Collection
 from typing import Any, Final
 
 from profiler.model import SightLine
-from profiler.output.changes import closers, enough, openers
+from profiler.output.changes import NEAR_M, closers, enough, openers
 from profiler.output.first_line import VERDICT_WORDS, at_an_end, first_line_parts
 from profiler.output.naming import capital, names_of, printable
 from profiler.output.numbers import (
@@ -22,12 +22,16 @@ from profiler.output.numbers import (
 from profiler.output.record import record
 from profiler.output.standing import standing
 
+#: Code of the caution that every radio answer carries.
+RADIO_CODE: Final = "radio-geometry"
 #: Width of the lead words [characters].
 LEAD: Final = 13
 #: Width of a line that is broken if it runs on [characters]; two of them fit an A4.
 WIDTH: Final = 100
 #: Stretches listed before the rest are only counted [1].
 MOST_LISTED: Final = 8
+#: Files whose cells differ by less have the same posts [1]; our choice.
+SAME_POSTS: Final = 1.05
 #: Sides of cells from this on are told in whole metres [m]; our choice.
 WHOLE_METRES_FROM: Final = 9.5
 
@@ -104,11 +108,18 @@ def _growth(values: Json) -> list[str]:
 
 
 def _judged_for(values: Json) -> str:
-    if "radio" not in values:
+    if not _is_radio(values):
         return "Judged for light. For a radio path add --frequency."
+    if "radio" not in values:
+        return "Judged for radio; without known ground no rule can be held against it."
     from profiler.output.radio_words import frequency_text  # only for a radio path
 
     return f"Judged for radio at {frequency_text(values['radio']['frequency_hz'])}."
+
+
+def _is_radio(values: Json) -> bool:
+    """Whether a frequency was given: without any known ground only a caution says so."""
+    return any(note["code"] == RADIO_CODE for note in values["cautions"])
 
 
 def headline(line: SightLine, *, show_in: str = "m") -> tuple[str, str]:
@@ -138,7 +149,7 @@ def air_and_ground(values: Json) -> str:
     both = f"{ke} = {kr}" if earth["stated"].startswith("ke") else f"{kr} = {ke}"
     if earth["stated"].startswith("dN"):
         both = f"{earth['stated']}, {both}"
-    wave = "radio" if "radio" in values else "light"
+    wave = "radio" if _is_radio(values) else "light"
     how = f"{wave}, {both} (default)" if earth["is_default"] else f"{both} (given)"
     kind = {
         "bare": "bare ground",
@@ -155,6 +166,9 @@ def _files(files: list[Json]) -> str:
         return "no file has any there"
     more = f" and {len(files) - 1} more" if len(files) > 1 else ""
     sides = " x ".join(_side(side) for side in files[0]["cell_m"])
+    coarsest = max((f["cell_m"] for f in files), key=max)
+    if max(coarsest) > SAME_POSTS * max(files[0]["cell_m"]):
+        sides += f" to {' x '.join(_side(side) for side in coarsest)}"
     return f"{printable(files[0]['name'])}{more}, posts {sides} m"
 
 
@@ -200,7 +214,7 @@ def _columns(rows: list[list[str]]) -> list[str]:
 
 def _path(values: Json, show: Show) -> str:
     path = values["path"]
-    voids = count(path["void_samples"]) if path["void_samples"] else "none"
+    voids = show.run(path["void_m"]) if path["void_m"] else "none"
     return (
         f"{'path':<7}{show.length(path['distance_m'])}, bearing "
         f"{path['azimuth_deg']:.1f}°, back {path['back_azimuth_deg']:.1f}°; "
@@ -297,7 +311,14 @@ def _shown_clear(values: Json, show: Show) -> list[str]:
             amount = f"{seen} of {show.given(height)} ({share})"
         lines.append(f"{known}{amount}, {arcmin(target['visible_arcmin'])} at the eye")
     # looking down, "rises above the crest" would be true of the rays and read as false
-    if crest is not None and values["to"]["amsl_m"] > crest["ground_m"]:
+    is_far = crest is not None and crest["distance_m"] > NEAR_M
+    whole = height > 0.0 and target["shown"] == "whole"
+    if (
+        crest is not None
+        and is_far
+        and not whole
+        and values["to"]["amsl_m"] > (crest["ground_m"])
+    ):
         lines.append(
             f"{known}rises {show.height(target['above_crest_m'])} above the crest in "
             f"front at {show.distance(crest['distance_m'])}"
@@ -343,7 +364,8 @@ def _other_ground(values: Json, show: Show) -> list[str]:
         return []
     margin = ""
     if other["margin_m"] is not None:
-        margin = f", margin {show.height(other['margin_m'])}"
+        where = show.distance(other["at_m"])
+        margin = f", margin {show.height(other['margin_m'])} at {where}"
     gaps = []
     for role in ("from", "to"):
         end = values[role]

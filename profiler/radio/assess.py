@@ -8,7 +8,7 @@ import numpy as np
 
 from profiler.constants import KE_RADIO
 from profiler.model import Note, Place, SightLine, Verdict
-from profiler.radio.criteria import Criterion, RuleSet
+from profiler.radio.criteria import Criterion, RuleSet, curvature_of
 from profiler.radio.obstruction import Obstruction, find_obstruction
 from profiler.radio.rule_sets import (
     EXTENDED_F1,
@@ -90,14 +90,27 @@ class RadioResult:
 
 def counted_ground(line: SightLine) -> Ground:
     """Known ground of an answer that counts against the line."""
-    length = line.path.length_m
+    return _counted(line).known
+
+
+def void_ground(line: SightLine) -> Ground:
+    """Pieces that count but have no known ground, at the highest it may stand."""
+    void = _counted(line).void
+    return Ground(void.dist_m, np.full(void.height_m.shape, line.void_below_m))
+
+
+def _counted(line: SightLine) -> Ground:
     near = line.ignore_near_m
-    return clip(ground_of(line.profile), near, length - near).known
+    return clip(ground_of(line.profile), near, line.path.length_m - near)
 
 
 def line_at(line: SightLine, ke: float) -> Line:
     """The line between an answer's ends at an effective earth radius factor."""
-    kappa = 1.0 / (ke * line.path.radius_m)
+    kappa = curvature_of(
+        Criterion(ke=ke, f1_fraction=0.0),
+        radius_m=line.path.radius_m,
+        length_m=line.path.length_m,
+    )
     return Line(line.path.length_m, line.from_.amsl_m, line.to.amsl_m, kappa)
 
 
@@ -171,26 +184,38 @@ def assess(
     return RadioResult(
         frequency_hz=frequency_hz,
         wavelength_m=wave,
-        state=_state(line, results, has_rule=rule is not None),
+        state=_state(line, results, wave, has_rule=rule is not None),
         rule=asked,
         results=results,
         governing=min(results, key=lambda r: r.margin_m),
         obstacles=tuple(_tight_place(line, stated, at, k) for k in obstacles(at)),
         obstruction=obstruction_of(line, frequency_hz),
-        warnings=_warnings(frequency_hz, asked),
+        warnings=rule_warnings(frequency_hz, asked),
     )
 
 
 def _state(
-    line: SightLine, results: tuple[CriterionResult, ...], *, has_rule: bool
+    line: SightLine,
+    results: tuple[CriterionResult, ...],
+    wave_m: float,
+    *,
+    has_rule: bool,
 ) -> RuleState:
     if line.verdict is Verdict.BLOCKED:
         return RuleState.BLOCKED
+    if has_rule and not all(r.is_met for r in results):
+        return RuleState.NOT_MET
+    if line.verdict is Verdict.UNDETERMINED:
+        return RuleState.UNDETERMINED
     if not has_rule:
         return RuleState.NO_RULE
-    if not all(r.is_met for r in results):
-        return RuleState.NOT_MET
-    return RuleState.UNDETERMINED if line.void is not None else RuleState.MET
+    # a void too high for the line may still stand in the zone, or in other air
+    void = void_ground(line)
+    if void.dist_m.size and not all(
+        _result(line, void, r.criterion, wave_m).is_met for r in results
+    ):
+        return RuleState.UNDETERMINED
+    return RuleState.MET
 
 
 def _result(
@@ -215,7 +240,8 @@ def _tight_place(line: SightLine, there: Line, at: Tight, index: int) -> TightPl
     )
 
 
-def _warnings(frequency_hz: float, rule: RuleSet) -> tuple[Note, ...]:
+def rule_warnings(frequency_hz: float, rule: RuleSet) -> tuple[Note, ...]:
+    """What was decided about a rule, and what it leaves open at a frequency."""
     notes = list(rule.notes)
     if frequency_hz < SMALLER_BELOW_HZ:
         text = (

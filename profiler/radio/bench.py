@@ -1,31 +1,24 @@
 """A path prepared for trying antenna heights against a set of criteria."""
 
 import math
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from typing import Final, NamedTuple
 
 import numpy as np
 
 from profiler.errors import InputError
 from profiler.kernels.circle import elevation_tangent, ray_height
-from profiler.model import FloatArray
-from profiler.radio.criteria import Criterion
-from profiler.radio.fresnel import fresnel_radius_m
-from profiler.radio.hull import Reach, true_shape, upper_hull
-from profiler.radio.tight import tight_places
-from profiler.sight.ground import Ground, quadratic
+from profiler.model.arrays import FloatArray, IntArray
+from profiler.radio.criteria import Criterion, curvature_of
+from profiler.radio.hull import Reach, upper_hull
+from profiler.radio.reach import reach_of
+from profiler.radio.tight import tightest_place
+from profiler.sight.ground import Ground
 from profiler.sight.line import Line
 
-#: A quadratic rises above its three samples by at most this part of its second
-#: coefficient: between u = 0 and ½ the interpolation error is c·u(½ − u), c/16 at most.
-BULGE_SHARE: Final = 16.0
-#: Room for the curve of the Fresnel zone inside a cell [m]; our choice, away from the
-#: ends it is below a centimetre.
-SLACK_M: Final = 0.05
-#: Pieces at each end, where the zone is steep, that are always cut fine [1].
-END_PIECES: Final = 8
-#: Places to which a piece is cut [1]; what is missed is c/4096, below a millimetre.
-FINE: Final = 33
+#: A criterion short by less than this at a trial is met [m]; a thousandth of the
+#: verdict's own band.
+SHORT_M: Final = 1e-6
 
 
 class Demand(NamedTuple):
@@ -40,8 +33,18 @@ class Need(NamedTuple):
     """A height above ground and the criterion that asks for it."""
 
     agl_m: float
+    """Infinite when no height does."""
     governing: int
     """Index of the criterion."""
+
+
+class Trial(NamedTuple):
+    """Two heights tried along the whole path."""
+
+    left_m: tuple[float, ...]
+    """For each criterion the least that is left anywhere."""
+    places: tuple[tuple[float, float], ...]
+    """For each criterion where that is, and the height it asks for there [m]."""
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
@@ -74,40 +77,59 @@ class Bench:
 
     def to_agl_many(self, from_agl_m: FloatArray) -> FloatArray:
         """(n,) least heights at the far end for (n,) heights at the near one [m]."""
-        eye = self.from_ground_m + from_agl_m
-        best = np.full(eye.shape, -np.inf)
-        for demand in self.demands:
-            tangent = _largest_tangents(demand, eye)
-            over = _heights(self.length_m, tangent, eye, demand.kappa_per_m)
-            best = np.maximum(best, over)
-        heights: FloatArray = np.maximum(best - self.to_ground_m, 0.0)
-        return heights
+        return self.to_agl_governed(from_agl_m)[0]
 
-    def left(self, from_agl_m: float, to_agl_m: float) -> list[float]:
-        """For each criterion the least that is left anywhere, at two heights [m]."""
-        found = []
+    def to_agl_governed(self, from_agl_m: FloatArray) -> tuple[FloatArray, IntArray]:
+        """The same, and for each the index of the criterion that asks for it."""
+        eye = self.from_ground_m + from_agl_m
+        over = [self._far_heights(demand, eye) for demand in self.demands]
+        heights = np.maximum(np.max(over, axis=0) - self.to_ground_m, 0.0)
+        return heights, np.argmax(over, axis=0)
+
+    def _far_heights(self, demand: Demand, eye_m: FloatArray) -> FloatArray:
+        tangent = _largest_tangents(demand, eye_m)
+        return _heights(self.length_m, tangent, eye_m, demand.kappa_per_m)
+
+    def tried(self, from_agl_m: float, to_agl_m: float) -> Trial:
+        """What each criterion leaves along the whole path at two heights."""
+        ends = self.from_ground_m + from_agl_m, self.to_ground_m + to_agl_m
+        left, places = [], []
         for demand in self.demands:
-            line = Line(
-                self.length_m,
-                self.from_ground_m + from_agl_m,
-                self.to_ground_m + to_agl_m,
-                demand.kappa_per_m,
+            line = Line(self.length_m, *ends, demand.kappa_per_m)
+            at = tightest_place(line, self.ground, demand.criterion, self.wavelength_m)
+            asked = at.ground_m + at.clear_m - at.left_m
+            left.append(float(at.left_m[0]))
+            places.append((float(at.dist_m[0]), float(asked[0])))
+        return Trial(tuple(left), tuple(places))
+
+    def with_places(self, trial: Trial) -> "Bench | None":
+        """The bench with the places at which a trial was short; None without any."""
+        if min(trial.left_m) >= -SHORT_M:
+            return None
+        demands = [
+            demand if left >= -SHORT_M else _with_place(demand, *place)
+            for demand, left, place in zip(
+                self.demands, trial.left_m, trial.places, strict=True
             )
-            at = tight_places(line, self.ground, demand.criterion, self.wavelength_m)
-            found.append(float(at.left_m.min()))
-        return found
+        ]
+        return replace(self, demands=tuple(demands))
+
+
+def _with_place(demand: Demand, dist_m: float, height_m: float) -> Demand:
+    reach = demand.reach
+    at = int(np.searchsorted(reach.dist_m, dist_m))
+    dist = np.insert(reach.dist_m, at, dist_m)
+    height = np.insert(reach.height_m, at, height_m)
+    return demand._replace(reach=upper_hull(dist, height, demand.kappa_per_m))
 
 
 def _ray_over(length_m: float, eye_m: float, demand: Demand, *, near: bool) -> float:
     """Height at the other end of the ray over everything one criterion asks for [m]."""
     dist = demand.reach.dist_m if near else length_m - demand.reach.dist_m
     kappa = demand.kappa_per_m
-    if dist.size == 0:
-        return -math.inf
-    tangent = float(
-        np.max(elevation_tangent(dist, demand.reach.height_m, eye_m, kappa))
-    )
-    return float(ray_height(length_m, tangent, eye_m, kappa))
+    tangents = elevation_tangent(dist, demand.reach.height_m, eye_m, kappa)
+    tangent = np.array([np.max(tangents)])
+    return float(_heights(length_m, tangent, np.array([eye_m]), kappa)[0])
 
 
 def _largest_tangents(demand: Demand, eye_m: FloatArray) -> FloatArray:
@@ -135,9 +157,14 @@ def _largest_tangents(demand: Demand, eye_m: FloatArray) -> FloatArray:
 def _heights(
     length_m: float, tangent: FloatArray, eye_m: FloatArray, kappa: float
 ) -> FloatArray:
-    """Heights at the far end of many rays from many eyes: linear in the eye too."""
+    """Heights at the far end of many rays from many eyes: linear in the eye too.
+
+    A ray so steep that it leaves the earth before the far end meets no height there.
+    """
     from_zero = ray_height(np.full(eye_m.shape, length_m), tangent, 0.0, kappa)
-    heights: FloatArray = from_zero + eye_m * (1.0 + kappa * from_zero)
+    # 1 + kappa·height is 1/(1 - kappa·rise), negative past the upright ray
+    heights = from_zero + eye_m * (1.0 + kappa * from_zero)
+    heights[~(1.0 + kappa * from_zero > 0.0)] = math.inf
     return heights
 
 
@@ -168,15 +195,22 @@ def bench_for(
     Raises
     ------
     InputError
-        If no ground is known between the ends.
+        If no ground is known between the ends, or a criterion bends the earth by a
+        quarter circle over the path.
     """
     if ground.dist_m.size == 0:
         msg = "No ground is known between the ends; no height can be named."
         raise InputError(msg)
     demands = []
     for criterion in criteria:
-        kappa = 1.0 / (criterion.ke * radius_m)
-        reach = _reach(ground, length_m, criterion, wavelength_m, kappa)
+        kappa = curvature_of(criterion, radius_m=radius_m, length_m=length_m)
+        reach = reach_of(
+            ground,
+            criterion,
+            length_m=length_m,
+            wavelength_m=wavelength_m,
+            kappa_per_m=kappa,
+        )
         demands.append(Demand(criterion, kappa, reach))
     return Bench(
         ground=ground,
@@ -186,47 +220,3 @@ def bench_for(
         wavelength_m=wavelength_m,
         demands=tuple(demands),
     )
-
-
-def _reach(
-    ground: Ground,
-    length_m: float,
-    criterion: Criterion,
-    wavelength_m: float,
-    kappa: float,
-) -> Reach:
-    """Hull of what one criterion asks for, exact between the samples too.
-
-    Between its samples a quadratic piece rises above them by at most a sixteenth of
-    its second coefficient. Pieces that could so rise above the hull of the samples are
-    cut fine, and the hull is taken again.
-    """
-
-    def ask(dist: FloatArray, height: FloatArray) -> FloatArray:
-        zone = fresnel_radius_m(dist, length_m=length_m, wavelength_m=wavelength_m)
-        asked: FloatArray = height + criterion.f1_fraction * zone + criterion.extra_m
-        return asked
-
-    samples = ask(ground.dist_m, ground.height_m)
-    dist, need = _inside(ground.dist_m.ravel(), samples.ravel(), length_m)
-    hull = upper_hull(dist, need, kappa)
-    hull_x, hull_y = true_shape(hull.dist_m, hull.height_m, kappa)
-    x, y = true_shape(ground.dist_m, samples, kappa)
-    gap = np.min(np.interp(x, hull_x, hull_y) - y, axis=1)
-    near = gap <= np.abs(quadratic(samples).c) / BULGE_SHARE + SLACK_M
-    near[:END_PIECES] = near[-END_PIECES:] = True
-    unit = np.linspace(0.0, 1.0, FINE)
-    part = Ground(ground.dist_m[near], ground.height_m[near])
-    fine = [part.place(np.full(part.dist_m.shape[0], u)) for u in unit]
-    all_dist = np.concatenate([dist, *(d for d, _ in fine)])
-    all_need = np.concatenate([need, *(ask(d, z) for d, z in fine)])
-    order = np.argsort(all_dist, kind="stable")
-    return upper_hull(*_inside(all_dist[order], all_need[order], length_m), kappa)
-
-
-def _inside(
-    dist_m: FloatArray, need_m: FloatArray, length_m: float
-) -> tuple[FloatArray, FloatArray]:
-    """The places strictly between the ends."""
-    between = (dist_m > 0.0) & (dist_m < length_m)
-    return dist_m[between], need_m[between]

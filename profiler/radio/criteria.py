@@ -3,6 +3,7 @@
 import math
 from dataclasses import dataclass
 
+from profiler.constants import M_PER_KM
 from profiler.errors import InputError
 from profiler.model import Note
 
@@ -11,6 +12,8 @@ from profiler.model import Note
 MOST_F1 = 3.0
 #: Difference under which two factors are the same [1]; rounding of a fraction.
 SAME_KE = 1e-12
+#: Turn of the effective earth over a path from which on no line exists [rad].
+QUARTER_TURN = math.pi / 2.0
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
@@ -44,6 +47,36 @@ class Criterion:
         """The criterion as the trade says it: "0.6 F1 at ke 4/3"."""
         extra = f" + {self.extra_m:g} m" if self.extra_m else ""
         return f"{self.f1_fraction:g} F1{extra} at ke {ke_text(self.ke)}"
+
+
+def curvature_of(criterion: Criterion, *, radius_m: float, length_m: float) -> float:
+    """Effective curvature that a criterion asks for on one path.
+
+    Parameters
+    ----------
+    criterion : Criterion
+    radius_m : float [m]
+        Radius of the earth along the path.
+    length_m : float [m]
+        Length of the path.
+
+    Returns
+    -------
+    float [1/m]
+
+    Raises
+    ------
+    InputError
+        If the earth would turn a quarter circle or more over the path.
+    """
+    # compared so, for a ke near 0 has no finite curvature
+    if criterion.ke * radius_m * QUARTER_TURN <= length_m:
+        msg = (
+            f"At ke {criterion.ke:g} the effective earth turns a quarter circle or "
+            f"more over {length_m / M_PER_KM:.0f} km: no line exists. Use a larger ke."
+        )
+        raise InputError(msg)
+    return 1.0 / (criterion.ke * radius_m)
 
 
 def ke_text(ke: float) -> str:

@@ -12,9 +12,10 @@ import numpy as np
 from profiler.kernels.circle import arc_ratio
 from profiler.model import FloatArray
 
-#: Height by which a smooth hull may be simplified [m]; a hundredth of the step to
-#: which mast heights are rounded.
-SAME_M = 1e-4
+#: Height by which a smooth hull may be simplified [m], times the share of the path to
+#: the nearer end: what a ray over it misses at the other end is no more than this, a
+#: tenth of the step to which heights are rounded.
+SAME_M = 1e-3
 
 
 class Reach(NamedTuple):
@@ -49,10 +50,11 @@ def true_shape(
 
 
 def upper_hull(dist_m: FloatArray, height_m: FloatArray, kappa_per_m: float) -> Reach:
-    """The places on the upper convex hull, in order of distance, to the safe side.
+    """The places on the upper convex hull, in order of distance.
 
-    Places that stand less than `SAME_M` above a chord of the hull are left out, and
-    the whole hull is raised by as much: it never lies below what must be cleared.
+    Places that stand less than `SAME_M` above a chord of the hull, and less than a like
+    share of it towards the ends, are left out. Every place of the hull is one of those
+    given: what clears too little of it is short.
 
     Parameters
     ----------
@@ -62,6 +64,8 @@ def upper_hull(dist_m: FloatArray, height_m: FloatArray, kappa_per_m: float) -> 
         Effective curvature.
     """
     x, y = true_shape(dist_m, height_m, kappa_per_m)
+    span = x[-1] - x[0]
+    same = SAME_M * np.minimum(x - x[0], x[-1] - x) / span if span > 0.0 else x
     keep = {0, int(x.size) - 1}
     spans = [(0, int(x.size) - 1)]
     while spans:
@@ -69,12 +73,13 @@ def upper_hull(dist_m: FloatArray, height_m: FloatArray, kappa_per_m: float) -> 
         if b - a < 2:
             continue
         inner = slice(a + 1, b)
-        above = (y[inner] - y[a]) * (x[b] - x[a]) - (y[b] - y[a]) * (x[inner] - x[a])
+        slope = (y[b] - y[a]) / (x[b] - x[a]) if x[b] > x[a] else 0.0
+        above = y[inner] - y[a] - slope * (x[inner] - x[a])
         best = int(np.argmax(above))
-        if above[best] <= SAME_M * (x[b] - x[a]):
-            continue
         top = a + 1 + best
+        if above[best] <= same[top]:
+            continue
         keep.add(top)
         spans += [(a, top), (top, b)]
     index = np.array(sorted(keep))
-    return Reach(dist_m[index], height_m[index] + SAME_M)
+    return Reach(dist_m[index], height_m[index])

@@ -1,9 +1,11 @@
 """Antenna heights for an answer's path."""
 
+import numpy as np
+
 from profiler.errors import InputError
 from profiler.model import SightLine
 from profiler.radio.answer import Rule, rule_for
-from profiler.radio.assess import counted_ground
+from profiler.radio.assess import counted_ground, void_ground
 from profiler.radio.bench import Bench, bench_for
 from profiler.radio.criteria import RuleSet
 from profiler.radio.masts import MastLimits, MastPlan, plan_masts
@@ -66,9 +68,10 @@ def path_bench(line: SightLine, *, frequency_hz: float, rule: RuleSet) -> Bench:
     if grounds[0] is None or grounds[1] is None:
         msg = "Antenna heights need ground at both ends: --from-ground, --to-ground."
         raise InputError(msg)
-    if line.void is not None:
+    void = void_ground(line).dist_m
+    if void.size:
         msg = (
-            f"{line.void.end_m - line.void.start_m:.0f} m of the path have no known "
+            f"{np.sum(void[:, 2] - void[:, 0]):.0f} m of the path have no known "
             "ground: no height can be named. Add elevation files or --sea-level."
         )
         raise InputError(msg)

@@ -135,9 +135,19 @@ def read_rule_set(path: Path) -> RuleSet:
         raise InputError(msg)
     try:
         values = tomllib.loads(path.read_text(encoding="utf-8"))
-    except (tomllib.TOMLDecodeError, UnicodeDecodeError) as error:
+    except (ValueError, RecursionError) as error:
         msg = f'Rule file "{path.name}" is no TOML ({error}).'
         raise InputError(msg) from error
+    except OSError as error:
+        msg = f'Rule file "{path.name}" cannot be read: {error.strerror}.'
+        raise InputError(msg) from error
+    unknown = sorted(set(values) - {"criterion", "source"})
+    if unknown:
+        msg = (
+            f'Rule file "{path.name}": "{unknown[0]}" is not known; use source and '
+            "tables [[criterion]]."
+        )
+        raise InputError(msg)
     tables = values.get("criterion")
     if not isinstance(tables, list) or not tables:
         msg = f'Rule file "{path.name}" needs tables [[criterion]] with ke and f1.'
@@ -146,8 +156,8 @@ def read_rule_set(path: Path) -> RuleSet:
         _criterion_of(table, f'"{path.name}", criterion {number}')
         for number, table in enumerate(tables, start=1)
     )
-    source = str(values.get("source", path.name))
-    return RuleSet(name=path.stem, source=source, criteria=criteria)
+    source = str(values.get("source", "as given"))
+    return RuleSet(name=path.name, source=source, criteria=criteria)
 
 
 def _criterion_of(table: Any, where: str) -> Criterion:
@@ -178,4 +188,8 @@ def _number(value: Any, what: str) -> float:
     if isinstance(value, bool) or not isinstance(value, int | float):
         msg = f"{what} must be a number, not {value!r}."
         raise InputError(msg)
-    return float(value)
+    try:
+        return float(value)
+    except OverflowError as error:
+        msg = f"{what} is too large."
+        raise InputError(msg) from error

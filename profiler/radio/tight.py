@@ -11,10 +11,10 @@ from typing import Final, NamedTuple
 
 import numpy as np
 
-from profiler.model import FloatArray
+from profiler.model.arrays import BoolArray, FloatArray
 from profiler.radio.criteria import Criterion
 from profiler.radio.fresnel import fresnel_radius_m
-from profiler.sight.ground import Ground, quadratic
+from profiler.sight.ground import Ground, Quadratic, quadratic
 from profiler.sight.line import Line
 
 #: Largest error of the parabola through three samples of the zone's radius, as a share
@@ -71,12 +71,8 @@ def tight_places(
     dist, height = [ground.dist_m.ravel()], [ground.height_m.ravel()]
     if ground.dist_m.size:
         fit = quadratic(first.left_m)
-        with np.errstate(divide="ignore", invalid="ignore"):
-            u = np.where(fit.c > 0.0, -fit.b / (2.0 * fit.c), np.nan)
-        u[~((u > 0.0) & (u < 1.0))] = np.nan
-        low = np.fmin(np.min(first.left_m, axis=1), fit.at(u))
-        miss = criterion.f1_fraction * parabola_miss(first.f1_m)
-        search = low - miss <= np.min(first.left_m) + ROUNDING_M
+        u = _vertex(fit)
+        search = _may_be_lowest(first, criterion, fit, u)
         part = Ground(ground.dist_m[search], first.clear_m[search])
         u[search] = _lowest_u(part, line.length_m, criterion, wavelength_m)
         there = np.isfinite(u)
@@ -90,6 +86,51 @@ def tight_places(
     return _evaluate(
         line, all_dist[between], all_height[between], criterion, wavelength_m
     )
+
+
+def tightest_place(
+    line: Line, ground: Ground, criterion: Criterion, wavelength_m: float
+) -> Tight:
+    """The one place where least is left after a criterion, as arrays of one.
+
+    The same as the lowest of `tight_places`, without the rest.
+    """
+    first = _evaluate(line, ground.dist_m, ground.height_m, criterion, wavelength_m)
+    fit = quadratic(first.left_m)
+    search = _may_be_lowest(first, criterion, fit, _vertex(fit))
+    part = Ground(ground.dist_m[search], ground.height_m[search])
+    clear = Ground(part.dist_m, first.clear_m[search])
+    u = _lowest_u(clear, line.length_m, criterion, wavelength_m)
+    inner, height = part.place(u)
+    dist = np.concatenate([part.dist_m.ravel(), inner])
+    at = _evaluate(
+        line,
+        dist,
+        np.concatenate([part.height_m.ravel(), height]),
+        criterion,
+        wavelength_m,
+    )
+    between = (dist > 0.0) & (dist < line.length_m)
+    low = int(np.argmin(np.where(between, at.left_m, np.inf)))
+    return Tight(*(values[low : low + 1] for values in at))
+
+
+def _vertex(fit: Quadratic) -> FloatArray:
+    """Where inside its piece a quadratic is lowest, NaN where it is so at an end."""
+    with np.errstate(divide="ignore", invalid="ignore"):
+        u = np.where(fit.c > 0.0, -fit.b / (2.0 * fit.c), np.nan)
+    u[~((u > 0.0) & (u < 1.0))] = np.nan
+    return u
+
+
+def _may_be_lowest(
+    first: Tight, criterion: Criterion, fit: Quadratic, vertex: FloatArray
+) -> BoolArray:
+    """(k,) pieces that may hold the lowest place, by their (k, 3) samples."""
+    low = np.fmin(np.min(first.left_m, axis=1), fit.at(vertex))
+    miss = criterion.f1_fraction * parabola_miss(first.f1_m)
+    may: BoolArray = low - miss <= np.min(first.left_m) + ROUNDING_M
+    return may
 
 
 def _evaluate(

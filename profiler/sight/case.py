@@ -90,6 +90,8 @@ class Look(NamedTuple):
     """Lowest margin of all spots [m]; infinite without any."""
     closest_m: float
     """The same without the run beside an end that lies on the ground [m]."""
+    closest_at_m: float
+    """Where that is [m]; NaN without any."""
 
     @property
     def is_blocked(self) -> bool:
@@ -109,7 +111,8 @@ def look_at(case: Case) -> Look:
         eye_on_ground=case.eye_on_ground,
         aim_on_ground=case.top_on_ground and case.hill_m <= 0.0,
     )
-    rest = at.margin_m[~run]
+    rest = Spots(at.dist_m[~run], at.ground_m[~run], at.margin_m[~run])
+    low = int(np.argmin(rest.margin_m)) if rest.margin_m.size else None
     return Look(
         line=line,
         known=known,
@@ -117,7 +120,8 @@ def look_at(case: Case) -> Look:
         at=at,
         seen=rays(known, case.eye_m, case.kappa_per_m),
         lowest_m=float(at.margin_m.min()) if at.margin_m.size else np.inf,
-        closest_m=float(rest.min()) if rest.size else np.inf,
+        closest_m=np.inf if low is None else float(rest.margin_m[low]),
+        closest_at_m=np.nan if low is None else float(rest.dist_m[low]),
     )
 
 

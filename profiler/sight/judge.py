@@ -98,7 +98,7 @@ def judge(
     check_inside(terrain, eye, role="from")
     check_inside(terrain, target, role="to")
     path = geodesic_path(eye.point, target.point)
-    _check_lengths(path, ignore_near_m, own_hill_m)
+    _check_lengths(path, ignore_near_m, own_hill_m, void_below_m)
     profile = with_cover(sample_path(terrain, path), path, cover)
     _check_cell(profile, path)
     earth = bend(air or Air(), path.radius_m)
@@ -121,13 +121,21 @@ def judge(
 
 
 def _check_lengths(
-    path: GeodesicPath, ignore_near_m: float, own_hill_m: float | None
+    path: GeodesicPath,
+    ignore_near_m: float,
+    own_hill_m: float | None,
+    void_below_m: float,
 ) -> None:
-    for what, value in (("near", ignore_near_m), ("hill", own_hill_m or 0.0)):
+    for option, value in (
+        ("--ignore-near", ignore_near_m),
+        ("--own-hill", own_hill_m or 0.0),
+    ):
         if not (math.isfinite(value) and value >= 0.0):
-            option = "--ignore-near" if what == "near" else "--own-hill"
             msg = f"{option} {value:g} m must be 0 or more."
             raise InputError(msg)
+    if not math.isfinite(void_below_m):
+        msg = f"--void-below {void_below_m:g} m must be a height. Use 9000 m or less."
+        raise InputError(msg)
     if 2.0 * ignore_near_m >= path.length_m:
         msg = (
             f"--ignore-near {ignore_near_m:g} m at both ends leaves nothing of a path "
@@ -265,6 +273,7 @@ def _on_dem_ground(
     return OtherGround(
         verdict=_verdict(other),
         margin_m=None if at is None else float(other.look.at.margin_m[at]),
+        at_m=None if at is None else float(other.look.at.dist_m[at]),
         shown=shown,
         from_ground_m=ends[0].ground_m,
         to_ground_m=ends[1].ground_m,

@@ -67,7 +67,10 @@ def needed(
     stretches : tuple of Stretch
         Blocked stretches, for naming the one that sets a figure.
     """
-    bias = now.lowest_m if now.is_blocked else now.closest_m
+    bias, bias_at = now.closest_m, now.closest_at_m
+    if now.is_blocked:
+        bias = now.lowest_m
+        bias_at = float(now.at.dist_m[int(np.argmin(now.at.margin_m))])
     case = _within_band(case)
     look = look_at(case)
     from_agl, from_at = _from_agl(case, look, from_ground_m)
@@ -86,6 +89,7 @@ def needed(
         ke=ke,
         kr=kr,
         dem_bias_m=_floor(bias) if math.isfinite(bias) else None,
+        dem_bias_at_m=bias_at if math.isfinite(bias) else None,
         from_stretch=_stretch_at(stretches, from_at),
         to_stretch=_stretch_at(stretches, to_at),
         both_stretch=_stretch_at(stretches, both_at),

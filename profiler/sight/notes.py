@@ -11,6 +11,9 @@ ZERO_RUN_M = 1000.0
 #: Ground outside this range is no ground [m]: below the Dead Sea's shore or above
 #: the highest summit, with room (common knowledge, from memory).
 LOWEST_GROUND_M = -500.0
+#: A survey further than this from the DEM is questioned [m]; our choice: about the
+#: largest offset between a geoid and the ellipsoid in much of the world.
+ODD_SURVEY_M = 40.0
 #: Paths longer than this meet the geoid's own bow [m]; our choice.
 GEOID_BOW_FROM_M = 100_000.0
 #: Posts further apart than this miss metres of a sharp crest [m]; our choice.
@@ -29,6 +32,14 @@ def warnings_for(
                 f"mast. If it is above sea level, say --{role}-amsl."
             )
             notes.append(Note(code="tall", text=text))
+        gap = _survey_gap(end)
+        if abs(gap) > ODD_SURVEY_M:
+            side = "above" if gap > 0.0 else "below"
+            text = (
+                f"The surveyed ground at the {role} end lies {abs(gap):.0f} m {side} "
+                "the DEM's. Feet for metres, or another height datum?"
+            )
+            notes.append(Note(code="survey-gap", text=text))
     if profile.sea_filled_m > 0.0:
         text = (
             f"{profile.sea_filled_m / M_PER_KM:.2f} km without ground count as water "
@@ -36,6 +47,13 @@ def warnings_for(
         )
         notes.append(Note(code="sea-filled", text=text))
     return tuple(notes)
+
+
+def _survey_gap(end: EndReport) -> float:
+    """Surveyed ground less the DEM's [m]; 0 without one of them."""
+    if end.ground_from != "surveyed" or end.dem_ground_m is None:
+        return 0.0
+    return (end.ground_m or 0.0) - end.dem_ground_m
 
 
 def _height_notes(profile: PathProfile) -> list[Note]:

@@ -98,14 +98,15 @@ def open_terrain(
     unit = None if dem_unit is None else checked_unit(dem_unit)
     paths = expand(dem)
     rasters = tuple(read_header(p, unit=unit, crs_text=dem_crs) for p in paths)
+    lattices = group_rasters(rasters)
     return Terrain(
         rasters=rasters,
-        lattices=group_rasters(rasters),
+        lattices=lattices,
         interpolation=_one_of(Interpolation, interpolation, "interpolation"),
         dem_kind=_one_of(DemKind, dem_kind, "dem kind"),
         sea_level_m=sea_level_m,
         hash_all=hash_all,
-        notes=tuple(_header_notes(rasters, unit)),
+        notes=tuple(_header_notes(rasters, lattices, unit)),
     )
 
 
@@ -153,7 +154,9 @@ def _files_of(path: Path) -> list[Path]:
     return files
 
 
-def _header_notes(rasters: tuple[Raster, ...], unit: str | None) -> Iterable[Note]:
+def _header_notes(
+    rasters: tuple[Raster, ...], lattices: tuple[Lattice, ...], unit: str | None
+) -> Iterable[Note]:
     """What a reader must know about the files before any post is read."""
     silent = [r.path.name for r in rasters if r.unit_stated is None]
     if unit is None and silent:
@@ -163,7 +166,12 @@ def _header_notes(rasters: tuple[Raster, ...], unit: str | None) -> Iterable[Not
         if unit not in (None, stated):
             text = f"Files state heights in {stated}; {unit} was declared and is used."
             yield Note(code="unit-overruled", text=text)
-    rough = [r.path.name for r in rasters if r.crs.ballpark]
+    rough = [
+        tile.raster.path.name
+        for lattice in lattices
+        for tile in lattice.tiles
+        if lattice.crs.ballpark
+    ]
     if rough:
         text = (
             f"{_names(rough)}: no exact shift from WGS84 to the file's datum is at "

@@ -20,10 +20,19 @@ from profiler.earth.projection import Projector
 from profiler.errors import DemError, InputError
 from profiler.model.arrays import FloatArray, IntArray
 from profiler.model.question import Point
-from profiler.terrain.raster import BLOCK_CACHE_BYTES, Affine, Raster, read_posts
+from profiler.terrain.raster import (
+    BLOCK_CACHE_BYTES,
+    Affine,
+    Raster,
+    read_posts,
+    stamp_of,
+)
 
 #: Tiles whose posts lie this close to the lattice are on it [cells]; our choice.
 ALIGNED_CELLS: Final = 1e-3
+#: Cells whose sizes differ by less are equally fine [1]; our choice: the scale of a
+#: projection changes more across one zone.
+SAME_SIZE: Final = 1.01
 #: Degrees in a turn.
 TURN_DEG: Final = 360.0
 #: Places along each side of a file from which its outline is told [1]; our choice.
@@ -96,8 +105,22 @@ def group_rasters(rasters: Sequence[Raster]) -> tuple[Lattice, ...]:
                 break
         else:
             groups.append([Tile(raster, 0, 0, number)])
-    lattices = [_lattice_of(group) for group in groups]
-    return tuple(sorted(lattices, key=lambda lattice: lattice.size_m))
+    return _finest_first([_lattice_of(group) for group in groups])
+
+
+def _finest_first(lattices: list[Lattice]) -> tuple[Lattice, ...]:
+    """Lattices by size of cell; of nearly equal ones the first given comes first."""
+    order: list[list[Lattice]] = []
+    for lattice in sorted(lattices, key=lambda one: one.size_m):
+        if order and lattice.size_m <= SAME_SIZE * order[-1][0].size_m:
+            order[-1].append(lattice)
+        else:
+            order.append([lattice])
+    return tuple(
+        lattice
+        for equals in order
+        for lattice in sorted(equals, key=lambda one: one.tiles[0].number)
+    )
 
 
 def _offset_on(first: Raster, other: Raster) -> tuple[int, int] | None:
@@ -138,12 +161,18 @@ def _lattice_of(tiles: list[Tile]) -> Lattice:
     return Lattice(
         tiles=tuple(tiles),
         affine=t,
-        crs=first.crs,
+        crs=_settled(first),
         rows=rows,
         cols=cols_,
         turn_cols=turn,
         cell_m=_cell_of(first),
     )
+
+
+def _settled(raster: Raster) -> Projector:
+    """A file's way to WGS84 with the one datum shift that serves its middle."""
+    x, y = raster.affine.at(np.array(raster.rows / 2.0), np.array(raster.cols / 2.0))
+    return raster.crs.settled_at(float(x), float(y))
 
 
 def _on_near_turns(tiles: list[Tile], turn: int) -> list[Tile]:
@@ -202,6 +231,22 @@ class Window(NamedTuple):
     """(rows, cols); number of the file each post came from, −1 where void."""
 
 
+def _opened(raster: Raster) -> "rasterio.DatasetReader":
+    """A file opened for its posts, refused when it is no longer the one it was."""
+    name = raster.path.name
+    try:
+        changed = stamp_of(raster.path) != raster.stamp
+        dataset = rasterio.open(raster.path)
+    except (RasterioError, OSError) as error:
+        msg = f'"{name}" can no longer be opened.'
+        raise DemError(msg) from error
+    if changed:
+        dataset.close()
+        msg = f'"{name}" has changed since it was opened. Open the terrain again.'
+        raise DemError(msg)
+    return dataset
+
+
 class PostReader:
     """Reads windows of posts; keeps files open while it is in use.
 
@@ -235,11 +280,7 @@ class PostReader:
         if dataset is None:
             if len(self._open) >= MOST_OPEN:
                 self._open.pop(next(iter(self._open))).close()
-            try:
-                dataset = rasterio.open(tile.raster.path)
-            except RasterioError as error:
-                msg = f'"{tile.raster.path.name}" can no longer be opened.'
-                raise DemError(msg) from error
+            dataset = _opened(tile.raster)
         self._open[tile.number] = dataset
         return dataset
 

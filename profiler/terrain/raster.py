@@ -76,6 +76,8 @@ class Raster:
     """Unit that the file states, or None."""
     point_registered: bool
     description: str
+    stamp: tuple[int, int]
+    """Size [bytes] and time of change [ns] when the header was read."""
 
 
 def read_header(path: Path, *, unit: str | None, crs_text: str | None) -> Raster:
@@ -186,7 +188,14 @@ def raster_of(
         unit_stated=stated,
         point_registered=dataset.tags().get("AREA_OR_POINT") == "Point",
         description=dataset.descriptions[0] or "",
+        stamp=stamp_of(path),
     )
+
+
+def stamp_of(path: Path) -> tuple[int, int]:
+    """Size [bytes] and time of the last change [ns] of a file."""
+    status = path.stat()
+    return status.st_size, status.st_mtime_ns
 
 
 def affine_of(dataset: "rasterio.DatasetReader") -> Affine:

@@ -23,6 +23,9 @@ from profiler.terrain.pixel_path import PixelPath, fit_pixel_path
 
 #: Ground that differs by less at a shared crossing is continuous [m]; rounding only.
 CONTINUOUS_M: Final = 1e-6
+#: Longest gap between the outermost posts of two grids that is bridged, in cells of
+#: the coarser [1]; our choice: a path across a cell's diagonal.
+BRIDGE_CELLS: Final = 1.5
 #: Longest piece of open sea outside every file [m]; over it the sight line leaves
 #: its quadratic by less than 1e-9 m.
 SEA_PIECE_M: Final = 1000.0
@@ -47,13 +50,15 @@ def sample_path(terrain: Terrain, path: GeodesicPath) -> PathProfile:
     sea_m = terrain.sea_level_m
     with PostReader() as reader:
         found, spans = _take_all(reader, terrain, path, spans, None)
+        bridges, spans = _bridged(terrain, path, found, spans)
+        found.append(bridges)
         filled_m = 0.0
         if sea_m is not None:
             filled_m = sum(b - a for a, b in spans)
             shore, spans = _take_all(reader, terrain, path, spans, sea_m)
             found += [*shore, _constant(spans, sea_m, SEA_PIECE_M)]
             spans = []
-        notes = _notes(terrain, reader)
+        notes = (*_notes(terrain, reader), *_bridge_notes(terrain, bridges))
     found.append(_constant(spans, np.nan, np.inf))
     return _assemble(terrain, path, found, notes, filled_m)
 
@@ -88,19 +93,87 @@ def _take_all(
     return found, spans
 
 
+def _bridged(
+    terrain: Terrain, path: GeodesicPath, found: list[Pieces], spans: Spans
+) -> tuple[Pieces, Spans]:
+    """Straight ground over the gap between the outermost posts of two grids.
+
+    Grids that meet edge to edge without sharing a lattice leave less than a cell
+    between their last posts, where no file has four posts around. Within one lattice
+    that cell is interpolated; here too, if no grid covers the gap.
+    """
+    known = _joined(found)
+    lattice = np.array(terrain.lattice_numbers)
+    kept: Spans = []
+    bridges = []
+    for a, b in spans:
+        before = np.flatnonzero(known.end_m == a)
+        after = np.flatnonzero(known.start_m == b)
+        if before.size == 0 or after.size == 0:
+            kept.append((a, b))
+            continue
+        left, right = int(before[0]), int(after[0])
+        pair = known.source[left], known.source[right]
+        cell = max(max(terrain.cell_of(int(n))) for n in pair)
+        one_grid = lattice[pair[0]] == lattice[pair[1]]
+        if one_grid or b - a > BRIDGE_CELLS * cell or _is_covered(terrain, path, a, b):
+            kept.append((a, b))
+            continue
+        low, high = known.height_m[left, 2], known.height_m[right, 0]
+        bridges.append((a, b, [low, (low + high) / 2.0, high], pair[0]))
+    return _pieces_of(bridges), kept
+
+
+def _pieces_of(rows: list[tuple[float, float, list[float], int]]) -> Pieces:
+    return Pieces(
+        np.array([row[0] for row in rows], dtype=np.float64),
+        np.array([row[1] for row in rows], dtype=np.float64),
+        np.array([row[2] for row in rows], dtype=np.float64).reshape(-1, 3),
+        np.array([row[3] for row in rows], dtype=np.int64),
+    )
+
+
+def _is_covered(terrain: Terrain, path: GeodesicPath, a: float, b: float) -> bool:
+    """Whether the middle of a gap lies between posts of any grid: a true void."""
+    for lattice in terrain.lattices:
+        shift = _turns_to(lattice, path)
+        col, row = _to_posts(lattice, path, np.array([(a + b) / 2.0]))
+        inside = lattice.cols[0] <= col[0] + shift <= lattice.cols[1] - 1
+        if inside and lattice.rows[0] <= row[0] <= lattice.rows[1] - 1:
+            return True
+    return False
+
+
+def _bridge_notes(terrain: Terrain, bridges: Pieces) -> tuple[Note, ...]:
+    if bridges.start_m.size == 0:
+        return ()
+    length = float(np.sum(bridges.end_m - bridges.start_m))
+    name = terrain.rasters[int(bridges.source[0])].path.name
+    text = (
+        f"{length:.0f} m of path lie between the outermost posts of grids that do not "
+        f"share a lattice (first at {name}); straight ground is taken there."
+    )
+    return (Note(code="seam-bridged", text=text),)
+
+
 def _pixel_path(lattice: Lattice, path: GeodesicPath) -> PixelPath:
-    mid = (lattice.cols[0] + lattice.cols[1]) / 2.0
-    shift = 0.0
-    if lattice.crs.is_geographic:
-        turn = lattice.crs.turn / abs(lattice.affine.dx_col)
-        col, _ = _to_posts(lattice, path, np.array([path.length_m / 2.0]))
-        shift = turn * round((mid - float(col[0])) / turn)
+    shift = _turns_to(lattice, path)
 
     def to_posts(dist_m: FloatArray) -> tuple[FloatArray, FloatArray]:
         col, row = _to_posts(lattice, path, dist_m)
         return col + shift, row
 
     return fit_pixel_path(to_posts, path.length_m)
+
+
+def _turns_to(lattice: Lattice, path: GeodesicPath) -> float:
+    """Columns by which the path's image is moved to the turn of the lattice."""
+    if not lattice.crs.is_geographic:
+        return 0.0
+    mid = (lattice.cols[0] + lattice.cols[1]) / 2.0
+    turn = lattice.crs.turn / abs(lattice.affine.dx_col)
+    col, _ = _to_posts(lattice, path, np.array([path.length_m / 2.0]))
+    return turn * round((mid - float(col[0])) / turn)
 
 
 def _to_posts(
@@ -140,14 +213,7 @@ def _assemble(
     notes: tuple[Note, ...],
     filled_m: float,
 ) -> PathProfile:
-    start = np.concatenate([p.start_m for p in found])
-    order = np.argsort(start, kind="stable")
-    pieces = Pieces(
-        start[order],
-        np.concatenate([p.end_m for p in found])[order],
-        np.concatenate([p.height_m for p in found])[order],
-        np.concatenate([p.source for p in found])[order],
-    )
+    pieces = _joined(found)
     split = _splits(pieces)
     dist, ground, owner, first = _samples(pieces, split)
     numbers = [int(n) for n in np.unique(owner) if n >= 0]
@@ -166,6 +232,18 @@ def _assemble(
         sea_level_m=terrain.sea_level_m,
         sea_filled_m=filled_m,
         notes=notes + _lattice_steps(terrain, pieces, split),
+    )
+
+
+def _joined(found: list[Pieces]) -> Pieces:
+    """All pieces in the order of the path."""
+    start = np.concatenate([p.start_m for p in found])
+    order = np.argsort(start, kind="stable")
+    return Pieces(
+        start[order],
+        np.concatenate([p.end_m for p in found])[order],
+        np.concatenate([p.height_m for p in found])[order],
+        np.concatenate([p.source for p in found])[order],
     )
 
 

@@ -12,8 +12,18 @@ from matplotlib.lines import Line2D
 from matplotlib.text import Text
 from numpy.typing import NDArray
 
-from profiler.model import Air, Point, SightLine, Station
+from profiler.model import (
+    Air,
+    CoverKind,
+    CoverSpan,
+    PathCover,
+    Point,
+    SightLine,
+    Station,
+)
+from profiler.output.answer import look
 from profiler.output.figure import draw_figure, ground_map
+from profiler.radio.criteria import Criterion, RuleSet
 from profiler.sight import judge
 from profiler.terrain import Terrain, open_terrain
 from tests.terrain import CENTRE, CENTRED_CRS, place, write_geotiff
@@ -47,6 +57,65 @@ def from_sample(eye_m: float, top_m: float) -> Case:
         agl_m=top_m,
     )
     return Case(terrain, judge(terrain, eye, top))
+
+
+def skarvel_to_quillet(
+    eye_m: float, top_m: float, **more: Any
+) -> tuple[Terrain, SightLine]:
+    terrain = open_terrain(SAMPLE / "upland.tif")
+    ends = [
+        Station(point=Point(lat_deg=lat, lon_deg=lon), name=name, agl_m=agl)
+        for lat, lon, name, agl in (
+            (48.20920, -21.50344, "Skarvel", eye_m),
+            (48.32758, -21.17892, "Quillet Mast", top_m),
+        )
+    ]
+    return terrain, look(terrain, ends[0], ends[1], **more)
+
+
+def radio(eye_m: float, top_m: float, hertz: float, rule: Any, **more: Any) -> Case:
+    asked = {"frequency_hz": hertz, "rule": rule, **more}
+    return Case(*skarvel_to_quillet(eye_m, top_m, **asked))
+
+
+def woods(_: Any) -> PathCover:
+    def span(start: float, end: float, high: float, name: str, kind: str) -> CoverSpan:
+        return CoverSpan(
+            start_m=start, end_m=end, height_m=high, name=name, kind=CoverKind(kind)
+        )
+
+    return PathCover(
+        spans=(
+            span(14600.0, 15200.0, 18.0, "Karn Wood", "trees"),
+            span(22500.0, 23300.0, 25.0, "Quillet Plantation", "trees"),
+            span(6000.0, 9000.0, 40.0, "Low Wood", "trees"),
+            span(1000.0, 1100.0, 60.0, "the mill", "building"),
+        )
+    )
+
+
+def surveyed(folder: Path) -> Case:
+    lat, lon = place(90.0, 20e3)
+    ends = (
+        Station(
+            point=Point(lat_deg=CENTRE[0], lon_deg=CENTRE[1]),
+            name="Eye",
+            agl_m=10.0,
+            ground_m=131.0,
+        ),
+        Station(point=Point(lat_deg=lat, lon_deg=lon), name="Top", agl_m=20.0),
+    )
+    return built(folder, 20e3, lambda e: 100.0 + hilly(e, 10.0, 7e3), ends)
+
+
+#: Criteria of airs that the drawing does not show, with metres to add.
+OTHER_AIRS = (
+    Criterion(ke=2.0 / 3.0, f1_fraction=0.3, extra_m=5.0),
+    Criterion(ke=4.0 / 3.0, f1_fraction=0.6),
+    Criterion(ke=1.0, f1_fraction=0.6, extra_m=1.0),
+    Criterion(ke=3.0, f1_fraction=1.0),
+)
+OTHER_RULE = RuleSet(name="given", source="as given", criteria=OTHER_AIRS)
 
 
 def own_hill() -> Case:
@@ -155,6 +224,14 @@ CASES: dict[str, Callable[[Path], Case]] = {
     "300 m and 500 m": lambda f: built(
         f, 300.0, lambda e: 50.0 + 3.0 * np.sin(e / 40.0), top_m=500.0, posts=150
     ),
+    "bank at A": lambda f: built(
+        f,
+        900.0,
+        lambda e: 50.0 + 8.0 * np.clip((e - 2.0) / 6.0, 0.0, 1.0),
+        eye_m=1.7,
+        top_m=2.0,
+        posts=900,
+    ),
     "450 km": lambda f: built(f, 450e3, mountains, eye_m=1.7, top_m=0.0, posts=4000),
     "500 m target": lambda f: built(
         f, 40e3, lambda e: 200.0 + hilly(e, 40.0, 9e3), top_m=500.0
@@ -169,6 +246,19 @@ CASES: dict[str, Callable[[Path], Case]] = {
     "wide void": lambda f: built(f, 27e3, hole(2e3, 25e3), eye_m=90.0, top_m=90.0),
     "ends on voids": on_voids,
     "flat sea": lambda f: built(f, 20e3, np.zeros_like, eye_m=1.7, top_m=12.0),
+    "bare and clear": lambda f: built(
+        f, 9e3, lambda e: 60.0 + e / 90.0 + hilly(e, 12.0, 7e3), eye_m=30.0, top_m=0.0
+    ),
+    "surveyed": surveyed,
+    "trees": lambda _: Case(*skarvel_to_quillet(40.0, 45.0, cover=woods)),
+    "radio blocked": lambda _: radio(20.0, 30.0, 4e8, "p530-temperate"),
+    "radio short": lambda _: radio(40.0, 45.0, 7.5e9, "p530-temperate"),
+    "radio met": lambda _: radio(60.0, 70.0, 7.5e9, "plain-0.6"),
+    "radio low": lambda _: radio(60.0, 70.0, 4e8, OTHER_RULE),
+    "radio without a rule": lambda _: radio(60.0, 70.0, 3e7, None),
+    "radio over trees": lambda _: radio(
+        40.0, 45.0, 2.4e10, "p530-temperate", cover=woods
+    ),
     "duct": lambda f: built(
         f, 100e3, lambda e: 60.0 + hilly(e, 20.0, 9e3), air=Air(kr=1.3)
     ),

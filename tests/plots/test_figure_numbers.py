@@ -10,8 +10,8 @@ from profiler.constants import VERSION
 from profiler.output.figure import draw_figure
 from profiler.output.figures.course import course_of
 from profiler.output.figures.marks import marks_of
+from profiler.output.figures.needs import needed_lines
 from profiler.output.figures.scale import scale_of
-from profiler.output.figures.tables import needed_lines
 from profiler.output.figures.target import ray_above_foot_m
 from tests.plots.figure_cases import (
     CASES,
@@ -196,14 +196,14 @@ def test_the_footer_names_ground_air_drawing_and_caution(
     )
 
 
-def test_dollar_signs_stay_and_unknown_letters_become_boxes(
+def test_dollar_signs_stay_and_unknown_letters_become_question_marks(
     case_of: Callable[[str], Case],
 ) -> None:
     case = case_of("main")
     head = ("SEEN. $a_1$ sees 山 and\ttabs", "costs $5 to $6")
     figure = draw_figure(case.line, headline=head, ground_map=None)
     words = words_of(figure)
-    assert "SEEN. $a_1$ sees □ and tabs" in words
+    assert "SEEN. $a_1$ sees ? and tabs" in words
     assert "Costs $5 to $6" in words
     assert not any(t.get_parse_math() for t in figure.texts)
 

@@ -13,6 +13,8 @@ from profiler.output.told import radio_of
 
 #: Letters A and B stand so far from their mark [pt].
 LETTER_OFF: Final = 10.0
+#: Width of a needed height [pt]: it ends before the letter begins.
+NEEDED_WIDE: Final = 13.5
 
 
 class Limits(NamedTuple):
@@ -64,7 +66,7 @@ def draw_ends(ax: Axes, course: Course, limits: Limits, scale: Scale) -> None:
         paper = course.paper_at(dist, height)
         if limits.low_m <= paper <= limits.high_m:
             at = (dist / u, paper / v)
-            page.spot(ax, at, "_", label="needed height", ms=2.0 * page.MARKER)
+            page.spot(ax, at, "_", label="needed height", ms=NEEDED_WIDE)
     for letter, shape, dist, height in (
         ("A", "o", 0.0, line.from_.amsl_m),
         ("B", "s", line.aim_distance_m, line.aim_m),

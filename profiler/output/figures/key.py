@@ -15,14 +15,14 @@ from profiler.output.figures.zone import RULE_LOOK
 #: two entries [in].
 SAMPLE_IN: Final = 0.3
 GAP_IN: Final = 0.06
-APART_LEAST_IN: Final = 0.1
+APART_LEAST_IN: Final = 0.08
 APART_MOST_IN: Final = 0.24
 #: Distance between two rows [in].
 ROW_IN: Final = 0.16
 #: Height of a patch [in].
 PATCH_IN: Final = 0.1
-#: Letters hinted for a small picture run wider than on A4 [1]; measured 1.02.
-HINTING: Final = 1.03
+#: Letters hinted for a small picture run wider than on A4 [1]; measured 1.05.
+HINTING: Final = 1.06
 #: Middle of small letters above their baseline [1 of their size].
 MIDDLE: Final = 0.36
 

@@ -92,7 +92,7 @@ def _with_rule(course: Course, marks: list[Mark], place: Place) -> list[Mark]:
 _NOTES: Final = {
     FIRST_BLOCK: "first block",
     HORIZON: "horizon",
-    RULE: "rule tightest",
+    RULE: "rule",
 }
 
 

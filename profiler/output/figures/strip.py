@@ -127,7 +127,7 @@ def draw_lane(
         share = (ground - limits.low_m) / (limits.high_m - limits.low_m)
         top = area.bottom + share * area.height
         _leader(figure, [(there, top), (there, lane.top), (x, y), (there, lane.bottom)])
-        _dot(figure, there, top)
+        _dot(figure, there, top, small=_is_at_end(course, mark, limits))
         discs.append(draw_disc(figure, x, y, mark))
     return discs
 
@@ -150,13 +150,28 @@ def _leader(figure: Figure, corners: list[tuple[float, float]]) -> None:
     )
 
 
-def _dot(figure: Figure, x_in: float, y_in: float) -> None:
+def _is_at_end(course: Course, mark: Mark, limits: Limits) -> bool:
+    """Whether a mark's dot would cover ring A or square B."""
+    line, area = course.line, page.PROFILE_AREA
+    per_m = area.width / line.path.length_m
+    up_m = area.height / (limits.high_m - limits.low_m)
+    near_in = page.MARKER / page.PT_PER_IN
+    ground = course.paper_at(mark.distance_m, mark.ground_m)
+    ends = ((0.0, line.from_.amsl_m), (line.aim_distance_m, line.aim_m))
+    return any(
+        abs(mark.distance_m - dist) * per_m < near_in
+        and abs(ground - course.paper_at(dist, height)) * up_m < near_in
+        for dist, height in ends
+    )
+
+
+def _dot(figure: Figure, x_in: float, y_in: float, *, small: bool) -> None:
     figure.add_artist(
         Line2D(
             [x_in / page.PAGE_IN[0]],
             [y_in / page.PAGE_IN[1]],
             marker="o",
-            ms=page.DOT,
+            ms=page.DOT / 2.0 if small else page.DOT,
             mfc=page.DISC,
             mec=page.EDGE,
             mew=RING,

@@ -11,6 +11,7 @@ from profiler.output.figures.marks import Mark
 from profiler.output.figures.scale import Scale
 from profiler.output.figures.strip import draw_disc
 from profiler.output.numbers import latitude, longitude
+from profiler.output.rounding import metres
 
 #: Characters of a name before it is cut [1].
 NAME_MOST: Final = 40
@@ -138,7 +139,7 @@ def mark_texts(mark: Mark, scale: Scale) -> tuple[str, str, str, str, str]:
     side = "above" if mark.margin_m < 0.0 else "below"
     return (
         show.bare_distance(mark.distance_m),
-        f"{show.height(abs(mark.margin_m))} {side} the line",
+        f"{show.height(abs(metres(mark.margin_m)))} {side} the line",
         latitude(mark.lat_deg),
         longitude(mark.lon_deg),
         mark.note,

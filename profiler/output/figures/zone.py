@@ -143,7 +143,7 @@ def draw_zone(ax: Axes, course: Course, zone: Zone, scale: Scale) -> None:
     ax.plot(
         zone.dist_m / u,
         course.paper_m(zone.dist_m, zone.rule_m) / v,
-        zorder=page.Z_RAY,
+        zorder=page.Z_EDGE,  # below the zone: 1 F1 in the stated air is its boundary
         label="rule's line",
         **RULE_LOOK,
     )
