@@ -116,6 +116,16 @@ def test_the_finest_grid_wins_and_the_coarse_one_fills_its_voids(
     assert ours.tolist() == [100.0, 50.0]
 
 
+def test_a_grid_that_is_not_needed_is_not_read(tmp_path: Path) -> None:
+    coarse, fine = terrain.plane(base_m=100.0), terrain.plane(base_m=50.0, cell_m=10.0)
+    terrain.write_geotiff(tmp_path / "coarse.tif", *coarse[:3], unit="m")
+    terrain.write_geotiff(tmp_path / "fine.tif", *fine[:3], unit="m")
+    both = open_terrain(tmp_path)
+    (tmp_path / "coarse.tif").unlink()
+    lat, lon = np.array([terrain.place(45.0, 500.0)]).T
+    assert ground_at(both, lat, lon) == pytest.approx(50.0, abs=1e-9)
+
+
 @pytest.mark.parametrize("turn", [-360.0, 0.0, 360.0])
 def test_a_grid_over_the_antimeridian_is_met_on_either_turn(
     turn: float, tmp_path: Path

@@ -118,6 +118,48 @@ def test_unknown_ground_is_a_place_to_measure() -> None:
     assert point.decides_m is None
 
 
+def test_ground_beside_the_path_is_a_place_of_its_own() -> None:
+    asked = (
+        *("--from", "Skarvel", "--from-height", "45m", "--to", "Vennick"),
+        *("--to-height", "10m", "--frequency", "400MHz"),
+    )
+    values = record_of(*asked)
+    side = values["radio"]["side"]
+    (point,) = (p for p in check_points(answer_of(*asked)) if p.offset_m > 0.0)
+    assert (point.side, point.offset_m) == (side["side"], side["offset_m"])
+    assert (point.lat_deg, point.lon_deg) == (side["lat_deg"], side["lon_deg"])
+    d1 = side["distance_m"]
+    d2 = values["path"]["distance_m"] - d1
+    f1 = (values["radio"]["wavelength_m"] * d1 * d2 / (d1 + d2)) ** 0.5
+    assert point.decides_m == pytest.approx(side["f1_share"] * f1, abs=1e-3)
+    assert "beside the path" in point.why
+
+
+def test_trees_hide_how_high_the_ground_of_a_stretch_is() -> None:
+    line = answer_of(*HIDDEN, "--canopy", "15m")
+    points = check_points(line)[1:-1]
+    stretches = [p for p in points if "worst of blocked stretch" in p.why]
+    assert len(stretches) == len(line.blocked_stretches)
+    decisive = line.decisive
+    assert decisive is not None
+    for point in stretches:
+        is_decisive = "decisive" in point.why
+        assert (point.ground_m is not None) == is_decisive
+        if is_decisive:
+            assert point.ground_m == pytest.approx(decisive.ground_m, abs=1e-3)
+
+
+def test_a_path_of_unknown_ground_has_its_void_and_its_stations() -> None:
+    sea = (
+        *("--from", "48.40,-21.60", "--from-amsl", "40m"),
+        *("--to", "48.39,-21.60", "--to-amsl", "40m"),
+    )
+    near, void, far = check_points(answer_of(*sea))
+    assert "no ground known" in void.why
+    assert (near.ground_m, void.ground_m, far.ground_m) == (None, None, None)
+    assert near.why == "station, ground not known"
+
+
 def test_places_are_in_order_and_lie_on_the_path() -> None:
     line = answer_of(*TIGHT)
     points = [p for p in check_points(line) if p.offset_m == 0.0]

@@ -6,6 +6,7 @@ from typing import Any
 
 import pytest
 
+from profiler.output.loss import loss_words
 from tests.asking import GIVEN, HIDDEN, SEA, UPLAND, Ended, record_of, run
 
 AT = ("--frequency", "6GHz")
@@ -73,6 +74,45 @@ def test_a_void_leaves_no_loss_and_says_why() -> None:
     assert ended.out.startswith(
         "No diffraction loss at 6 GHz: part of the path has no known ground."
     )
+
+
+def test_a_path_without_any_known_ground_has_no_place_to_name() -> None:
+    sea = (
+        *("--from", "48.40,-21.60", "--from-amsl", "40m"),
+        *("--to", "48.39,-21.60", "--to-amsl", "40m"),
+    )
+    ended = diffraction(*sea, *AT)
+    assert ended.status == 0, ended.err
+    (path,) = (x for x in ended.out.splitlines() if x.startswith("path "))
+    assert " the line" not in path
+    assert losses_of(*sea, *AT)["decisive"] is None
+
+
+def test_ground_left_out_of_the_line_still_costs_and_that_is_said() -> None:
+    told = "Ground near the ends counts in the loss, though left out of the line."
+    near = (*HIDDEN, *AT, "--ignore-near", "50m")
+    assert told in diffraction(*near).out
+    assert told not in diffraction(*HIDDEN, *AT).out
+    assert (
+        losses_of(*near)["diffraction_db"] == losses_of(*HIDDEN, *AT)["diffraction_db"]
+    )
+
+
+def test_obstacles_that_are_none_are_told_as_none() -> None:
+    high = ("--from", "Skarvel", "--from-height", "300m")
+    ended = diffraction(*high, *HIDDEN[4:], *AT)
+    assert "none: no ground within 0.6 F1 of the line" in ended.out
+    assert ended.out.startswith("Diffraction loss 0.0 dB at 6 GHz")
+
+
+def test_trees_add_to_the_loss() -> None:
+    bare, wood = losses_of(*HIDDEN, *AT), losses_of(*HIDDEN, *AT, "--canopy", "15m")
+    assert wood["diffraction_db"] > bare["diffraction_db"]
+
+
+def test_the_words_follow_the_unit_that_is_shown() -> None:
+    values = losses_of(*HIDDEN, *AT)
+    assert "Skarvel (65.6 ft)" in loss_words(values, show_in="ft")
 
 
 def test_the_record_in_a_file_is_the_one_on_stdout(tmp_path: Path) -> None:

@@ -179,7 +179,7 @@ def test_record_page_lists_every_field_and_no_other() -> None:
                 ("profile", (*beside, "--to-height", "10m"), radio),
                 ("profile", HIDDEN, trees),
                 ("masts", HIDDEN, radio),
-                ("diffraction", HIDDEN, radio[:2]),
+                ("diffraction", HIDDEN, ("--frequency", "6GHz")),
             )
         ),
     ]

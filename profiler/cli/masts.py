@@ -12,11 +12,11 @@ from profiler.cli.options import (
     stacked,
 )
 from profiler.cli.profile import path_answer, wrote
-from profiler.cli.question import Options, rule_from
+from profiler.cli.question import Options, assumed_heights, check_heights, rule_from
 from profiler.cli.sections import SectionCommand
 from profiler.cli.types import HEIGHT, NUMBER
 from profiler.constants import KE_RADIO
-from profiler.model import Air
+from profiler.model import Air, EndReport
 from profiler.output.files import write_text
 
 EXAMPLES: Final = {
@@ -115,8 +115,10 @@ def masts_command(**options: Any) -> None:
     """
     from profiler.output.masts_record import masts_record, masts_text
     from profiler.output.masts_words import masts_words
+    from profiler.radio.assess import rule_warnings
     from profiler.radio.plan import antenna_heights
 
+    check_heights(options)
     rule = rule_from(options)
     if options["frequency"] is None or rule is None:
         msg = "Antenna heights need --frequency and a rule: --criterion or --rule-set."
@@ -129,11 +131,11 @@ def masts_command(**options: Any) -> None:
         rule=rule,
         near=near,
         far=far,
-        given_from_agl_m=options["from_height"],
-        given_to_agl_m=options["to_height"],
+        given_from_agl_m=_given(line.from_, "from", options),
+        given_to_agl_m=_given(line.to, "to", options),
     )
     values = masts_record(plan, line, rule=made, frequency_hz=options["frequency"])
-    for note in (*line.warnings, *made.notes):
+    for note in (*line.warnings, *rule_warnings(options["frequency"], made)):
         click.echo(f"Warning: {note.text}", err=True)
     if options["json_file"] == "-":
         click.echo(masts_text(values).encode(), nl=False)
@@ -145,8 +147,13 @@ def masts_command(**options: Any) -> None:
         _draw(values, options)
 
 
+def _given(end: EndReport, role: str, options: Options) -> float | None:
+    """Height above ground of an end whose height was stated [m]."""
+    return None if role in assumed_heights(options) else end.agl_m
+
+
 def _limits(options: Options, role: str) -> Any:
-    from profiler.radio.masts import MastLimits
+    from profiler.radio.limits import MastLimits
 
     return MastLimits(
         least_m=options[f"{role}_least"],

@@ -34,6 +34,7 @@ def _end_options(role: str, who: str, default: str) -> list[Decorator]:
             "Question",
             f"--{role}",
             f"{role}_point",
+            once=True,
             metavar="POINT",
             required=True,
             help=f'{who}: "57.1,-4.2" (latitude,longitude), "48 12 33.1 N, 21 30 12.4 '

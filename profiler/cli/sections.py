@@ -12,9 +12,12 @@ QUOTES = 'Put the pair in quotes: --from "57.1,-4.2".'
 class SectionOption(click.Option):
     """An option that knows the section of the help it stands in."""
 
-    def __init__(self, *args: Any, section: str = "Other", **kwargs: Any) -> None:
-        """Take the section besides what click takes."""
+    def __init__(
+        self, *args: Any, section: str = "Other", once: bool = False, **kwargs: Any
+    ) -> None:
+        """Take, besides what click takes, the section and whether it stands once."""
         self.section = section
+        self.once = once
         super().__init__(*args, **kwargs)
 
 
@@ -69,9 +72,9 @@ class SectionCommand(click.Command):
             raise
 
     def _refuse_repeats(self, ctx: click.Context, args: list[str]) -> None:
-        """Refuse an option given twice, of which click would keep the last."""
+        """Refuse what may stand only once: of two, click would keep the last."""
         for param in self.get_params(ctx):
-            if not isinstance(param, click.Option) or param.multiple or param.is_flag:
+            if not (isinstance(param, SectionOption) and param.once):
                 continue
             name = param.opts[0]
             if sum(arg == name or arg.startswith(f"{name}=") for arg in args) > 1:

@@ -35,6 +35,12 @@ GPX: Final = "http://www.topografix.com/GPX/1/1"
 #: Longitude of the antimeridian [deg]; GPX 1.1 ends just before it.
 HALF_TURN_DEG: Final = 180.0
 GROUND: Final = "height of ground, and of trees or buildings on it"
+#: Where a station's ground came from, in words.
+GROUND_FROM: Final = {
+    "dem": "as in the elevation file",
+    "surveyed": "surveyed",
+    "none": "not known",
+}
 COLUMNS: Final = (
     "name",
     "lat_deg",
@@ -143,18 +149,13 @@ def _stations(values: Json) -> tuple[CheckPoint, CheckPoint]:
             ground_m=values[role]["ground_m"],
             antenna_agl_m=values[role]["agl_m"],
             measure="elevation of the ground; height of the antenna or eye above it",
-            why=f"station, ground as {_ground_from(values[role]['ground_from'])}",
+            why=f"station, ground {GROUND_FROM[values[role]['ground_from']]}",
         )
         for role, name, distance in zip(
             ("from", "to"), names, (0.0, values["path"]["distance_m"]), strict=True
         )
     )
     return near, far
-
-
-def _ground_from(source: str) -> str:
-    told = {"dem": "in the elevation file", "surveyed": "surveyed", "none": "not known"}
-    return told[source]
 
 
 def _at(

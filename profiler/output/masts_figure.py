@@ -1,4 +1,4 @@
-"""The figure of a plan of masts: one antenna height against the other, on one A4 page."""
+"""The figure of antenna heights: one against the other, on one A4 page."""
 
 from typing import Any, Final, NamedTuple
 

@@ -5,10 +5,13 @@ from typing import Any, Final
 
 from profiler.constants import VERSION
 from profiler.model import SightLine
-from profiler.output.radio_record import criterion_record
+from profiler.output.radio_record import criterion_record, note_record, rule_record
 from profiler.output.record import record
-from profiler.output.rounding import metres, ratio
+from profiler.output.rounding import metres, metres_up, ratio
+from profiler.radio.answer import RADIO_CAUTION
+from profiler.radio.assess import rule_warnings
 from profiler.radio.criteria import RuleSet
+from profiler.radio.limits import MastLimits
 from profiler.radio.masts import MastPair, MastPlan
 
 #: Name and version of the masts' record.
@@ -42,9 +45,18 @@ def masts_record(
     margins = (None,) * len(plan.criteria) if shown is None else shown.margins_m
     return {
         "schema": MASTS_SCHEMA,
-        "equal_agl_m": None if plan.equal is None else metres(plan.equal.from_agl_m),
+        "equal_agl_m": _end(plan.equal, "from_agl_m"),
         "from_agl_m": _end(plan.for_given_to, "from_agl_m"),
         "to_agl_m": _end(plan.for_given_from, "to_agl_m"),
+        "given": {
+            "from_agl_m": metres(plan.given_from_agl_m),
+            "to_agl_m": metres(plan.given_to_agl_m),
+        },
+        "beyond": {
+            "from_agl_m": metres_up(plan.from_beyond_agl_m),
+            "to_agl_m": metres_up(plan.to_beyond_agl_m),
+        },
+        "limits": {"from": _limits(plan.near), "to": _limits(plan.far)},
         "governing": None if shown is None else criterion_record(shown.governing),
         "criteria": [
             {**criterion_record(c), "margin_m": metres(m)}
@@ -60,10 +72,14 @@ def masts_record(
             }
             for near, far, criterion in plan.curve
         ],
-        "rule": {"name": rule.name, "source": rule.source},
+        "rule": rule_record(rule),
         "frequency_hz": frequency_hz,
-        **{k: path[k] for k in ("path", "terrain", "from", "to", "cautions")},
-        "warnings": path["warnings"],
+        **{k: path[k] for k in ("path", "terrain", "from", "to")},
+        "cautions": [*path["cautions"], note_record(RADIO_CAUTION)],
+        "warnings": [
+            *path["warnings"],
+            *(note_record(n) for n in rule_warnings(frequency_hz, rule)),
+        ],
         "software": {"name": "overbrow", "version": VERSION},
     }
 
@@ -74,13 +90,22 @@ def masts_text(values: Json) -> str:
 
 
 def _end(pair: MastPair | None, name: str) -> float | None:
-    return None if pair is None else metres(float(getattr(pair, name)))
+    return None if pair is None else metres_up(float(getattr(pair, name)))
+
+
+def _limits(limits: MastLimits) -> Json:
+    return {
+        "least_m": metres(limits.least_m),
+        "most_m": metres(limits.most_m),
+        "section_m": metres(limits.section_m),
+        "cost_per_m": ratio(limits.cost_per_m),
+    }
 
 
 def _heights(pair: MastPair) -> Json:
     return {
-        "from_agl_m": metres(pair.from_agl_m),
-        "to_agl_m": metres(pair.to_agl_m),
+        "from_agl_m": metres_up(pair.from_agl_m),
+        "to_agl_m": metres_up(pair.to_agl_m),
     }
 
 

@@ -3,7 +3,7 @@
 from typing import Any, Final
 
 from profiler.output.naming import capital, names_of
-from profiler.output.numbers import Show, ratio
+from profiler.output.numbers import DOWN, UP, Show, ratio
 from profiler.output.radio_words import criterion_text, frequency_text
 
 #: From this height on marking, lighting and registration rules may apply [m]; 200 ft,
@@ -62,9 +62,9 @@ def first_masts_line(values: Json, show: Show) -> str:
     radio = frequency_text(values["frequency_hz"])
     if values["equal_agl_m"] is None:
         return f"No equal heights within the limits meet the rule at {radio}."
-    height = show.height(values["equal_agl_m"], rounding="up")
+    height = show.height(values["equal_agl_m"], rounding=UP)
     governs = ""
-    if values["from_agl_m"] is None and values["to_agl_m"] is None:
+    if values["margins_at"]["from_agl_m"] == values["margins_at"]["to_agl_m"]:
         governs = f"; {criterion_text(values['governing'])} governs"
     return f"Equal antenna heights of {height} meet the rule at {radio}{governs}."
 
@@ -73,7 +73,7 @@ def _rule(values: Json, show: Show) -> list[str]:
     lines = []
     for criterion in values["criteria"]:
         left = criterion["margin_m"]
-        told = "" if left is None else f"   leaves {show.height(left, rounding='down')}"
+        told = "" if left is None else f"   leaves {show.height(left, rounding=DOWN)}"
         lines.append(f"{criterion_text(criterion)}{told}")
     at = values["margins_at"]
     if at is not None:
@@ -85,13 +85,28 @@ def _rule(values: Json, show: Show) -> list[str]:
 def _given(values: Json, show: Show) -> list[tuple[str, str]]:
     eye, name = names_of(values)
     rows = []
-    if values["from_agl_m"] is not None:
-        height = show.height(values["from_agl_m"], rounding="up")
-        rows.append(("least", f"{capital(eye)} at {height} for the given {name}"))
-    if values["to_agl_m"] is not None:
-        height = show.height(values["to_agl_m"], rounding="up")
-        rows.append(("least", f"{capital(name)} at {height} for the given {eye}"))
+    for role, mast, other, other_name in (
+        ("from", eye, "to", name),
+        ("to", name, "from", eye),
+    ):
+        given = values["given"][f"{other}_agl_m"]
+        if given is not None:
+            held = f"for the given {other_name} at {show.given(given)}"
+            rows.append(("least", _least(values, role, mast, held, show)))
     return rows
+
+
+def _least(values: Json, role: str, mast: str, held: str, show: Show) -> str:
+    """The least height of one mast for the given other, or that none does."""
+    least = values[f"{role}_agl_m"]
+    if least is not None:
+        return f"{capital(mast)} at {show.height(least, rounding=UP)} {held}"
+    most = show.given(values["limits"][role]["most_m"])
+    none = f"no height up to {most} at {capital(mast)} does {held}"
+    beyond = values["beyond"][f"{role}_agl_m"]
+    if beyond is None:
+        return none
+    return f"{none}; {show.height(beyond, rounding=UP)} would"
 
 
 def _cheapest(values: Json, show: Show) -> list[tuple[str, str]]:

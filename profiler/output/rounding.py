@@ -1,5 +1,6 @@
 """How the record rounds: metres to 3 decimals, degrees to 9, ratios to 6, dB to 3."""
 
+import math
 from typing import Final, overload
 
 #: Decimals of metres, degrees, ratios and decibels in every record.
@@ -18,6 +19,20 @@ def metres(value: float | None) -> float | None: ...
 def metres(value: float | None) -> float | None:
     """Metres (or minutes of arc) as the record writes them."""
     return _rounded(value, M_DECIMALS)
+
+
+@overload
+def metres_up(value: float) -> float: ...
+@overload
+def metres_up(value: None) -> None: ...
+@overload
+def metres_up(value: float | None) -> float | None: ...
+def metres_up(value: float | None) -> float | None:
+    """Metres that must suffice, rounded up; what rounding left over is no reason to."""
+    if value is None:
+        return None
+    steps = round(value * 10**M_DECIMALS, M_DECIMALS)
+    return math.ceil(steps) / 10**M_DECIMALS
 
 
 def deg(value: float) -> float:

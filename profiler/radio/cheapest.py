@@ -93,10 +93,18 @@ class _Prices:
         """The pairs of near heights so many sections above the lowest."""
         near, far = self._near, self._far
         heights = np.round(self._first_m + near.section_m * index, DECIMALS)
-        least = np.maximum(self._bench.to_agl_many(heights), far.least_m)
+        needed = self._bench.to_agl_many(heights)
+        # no cost times an infinite height
+        can = needed <= far.most_m + SAME_M
+        least = np.maximum(np.where(can, needed, far.most_m), far.least_m)
         steps = np.ceil(least / far.section_m - WHOLE_STEP)
         others = np.round(steps * far.section_m, DECIMALS)
         price = heights * near.cost_per_m + others * far.cost_per_m
         floor = heights * near.cost_per_m + least * far.cost_per_m
-        is_built = others <= far.most_m + SAME_M
-        return _Found(heights, others, np.where(is_built, price, np.inf), floor)
+        is_built = can & (others <= far.most_m + SAME_M)
+        return _Found(
+            heights,
+            others,
+            np.where(is_built, price, np.inf),
+            np.where(can, floor, np.inf),
+        )

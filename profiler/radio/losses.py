@@ -87,7 +87,7 @@ def path_losses(
     whole, reason = loss_of(
         line, frequency_hz, sea_fraction=sea_fraction, polarization=polarization
     )
-    case = None if whole is None else _case(line, frequency_hz, whole)
+    case = _case(line, frequency_hz, whole)
     free = free_space_loss_db(ray_length_m(line), frequency_hz=frequency_hz)
     return PathLosses(
         frequency_hz=frequency_hz,
@@ -104,7 +104,10 @@ def path_losses(
     )
 
 
-def _case(line: SightLine, frequency_hz: float, whole: DiffractionLoss) -> Case | None:
+def _case(
+    line: SightLine, frequency_hz: float, whole: DiffractionLoss | None
+) -> Case | None:
+    """What the methods look at; None where the headline has no meaning."""
     held, raw = assess(line, frequency_hz=frequency_hz), raw_profile(line)
     radius = line.earth.effective_radius_m
     ray = Line(
@@ -112,7 +115,7 @@ def _case(line: SightLine, frequency_hz: float, whole: DiffractionLoss) -> Case 
     )
     wave = wavelength_of(frequency_hz)
     found = find_obstruction(counted_ground(line), ray, wave)
-    if held is None or raw is None or radius is None or found is None:
+    if whole is None or held is None or raw is None or radius is None or found is None:
         return None
     return Case(
         line=line,

@@ -22,6 +22,9 @@ CURVE_REACH: Final = 4.0
 #: tenth of a micrometre.
 CUTS: Final = 1001
 TIMES: Final = 4
+#: Metres at the far end for a metre at the near one from which on a point of the curve
+#: is tried along the whole path [1]; our choice: the cut misses 0.02 mm at most.
+STEEP: Final = 20.0
 #: Trials after which a height is given up [1]; one or two are usual.
 MOST_TRIALS: Final = 40
 
@@ -236,6 +239,7 @@ def _curve(
         return ()
     rising = np.geomspace(low + 1.0, high + 1.0, CURVE_POINTS) - 1.0
     heights = np.unique([round_up(float(agl), STEP_M) for agl in rising])
+    bench = _exact_where_steep(bench, heights, near, far)
     needs, governing = bench.to_agl_governed(heights)
     points = []
     for height, need, index in zip(heights, needs, governing, strict=True):
@@ -243,3 +247,24 @@ def _curve(
         if near.allows(height) and far.allows(other):
             points.append((float(height), other, bench.demands[index].criterion))
     return tuple(points)
+
+
+def _exact_where_steep(
+    bench: Bench, heights: FloatArray, near: MastLimits, far: MastLimits
+) -> Bench:
+    """The bench mended at near heights where the far one falls steeply.
+
+    There ground close to the near mast governs, and a long lever hangs on the places
+    to which it was cut.
+    """
+    needs = bench.to_agl_many(np.concatenate([heights, heights + STEP_M]))
+    needs = np.minimum(needs, far.most_m)
+    fall = (needs[: heights.size] - needs[heights.size :]) / STEP_M
+    for height in heights[fall > STEEP]:
+
+        def least(trial: Bench, near_m: float = float(height)) -> Heights:
+            agl = round_up(max(trial.to_agl(near_m).agl_m, far.least_m), STEP_M)
+            return (near_m, agl) if far.allows(agl) else None
+
+        bench, _ = _settled(bench, least, near, far)
+    return bench

@@ -8,7 +8,8 @@ from profiler.radio.answer import Rule, rule_for
 from profiler.radio.assess import counted_ground, void_ground
 from profiler.radio.bench import Bench, bench_for
 from profiler.radio.criteria import RuleSet
-from profiler.radio.masts import MastLimits, MastPlan, plan_masts
+from profiler.radio.limits import MastLimits
+from profiler.radio.masts import MastPlan, plan_masts
 from profiler.radio.waves import wavelength_m
 
 

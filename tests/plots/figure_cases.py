@@ -101,7 +101,7 @@ def surveyed(folder: Path) -> Case:
             point=Point(lat_deg=CENTRE[0], lon_deg=CENTRE[1]),
             name="Eye",
             agl_m=10.0,
-            ground_m=131.0,
+            surveyed_ground_m=131.0,
         ),
         Station(point=Point(lat_deg=lat, lon_deg=lon), name="Top", agl_m=20.0),
     )
@@ -247,7 +247,7 @@ CASES: dict[str, Callable[[Path], Case]] = {
     "ends on voids": on_voids,
     "flat sea": lambda f: built(f, 20e3, np.zeros_like, eye_m=1.7, top_m=12.0),
     "bare and clear": lambda f: built(
-        f, 9e3, lambda e: 60.0 + e / 90.0 + hilly(e, 12.0, 7e3), eye_m=30.0, top_m=0.0
+        f, 9e3, lambda e: 60.0 + (e / 900.0) ** 2 + hilly(e, 4.0, 7e3), top_m=0.0
     ),
     "surveyed": surveyed,
     "trees": lambda _: Case(*skarvel_to_quillet(40.0, 45.0, cover=woods)),

@@ -1,5 +1,7 @@
 """Trees and buildings on the profile: a stippled band above the ground."""
 
+from typing import Any
+
 import numpy as np
 from matplotlib.axes import Axes
 
@@ -44,7 +46,11 @@ def draw_cover(ax: Axes, trace: Trace, scale: Scale) -> None:
         label="trees, buildings",
     )
     outlines = [_outline(x, foot, top, run) for run in _runs(covered)]
-    look = {"color": page.COVER, "lw": page.COVER_WIDTH, "zorder": page.Z_EDGE}
+    look: dict[str, Any] = {
+        "color": page.COVER,
+        "lw": page.COVER_WIDTH,
+        "zorder": page.Z_EDGE,
+    }
     ax.plot(*np.hstack(outlines), **look)
 
 

@@ -21,8 +21,8 @@ APART_MOST_IN: Final = 0.24
 ROW_IN: Final = 0.16
 #: Height of a patch [in].
 PATCH_IN: Final = 0.1
-#: Letters hinted for a small picture run wider than on A4 [1]; measured 1.05.
-HINTING: Final = 1.06
+#: Letters are hinted to whole pixels and run widest in a small picture [1/in].
+SMALL_DPI: Final = 77.0
 #: Middle of small letters above their baseline [1 of their size].
 MIDDLE: Final = 0.36
 
@@ -76,7 +76,7 @@ def draw_key(figure: Figure, ax: Axes) -> None:
     sized = []
     for entry in (e for e in _ENTRIES if e.label in present):
         text = page.write(figure, 0.0, 0.0, entry.label, size=page.SMALL)
-        words = page.width_in(figure, text) * HINTING
+        words = page.width_in(figure, text, dpi=SMALL_DPI)
         sized.append(_Sized(entry, text, SAMPLE_IN + GAP_IN + words))
     rows = _rows(sized, area.width)
     step = ROW_IN if len(rows) > 1 else 0.0

@@ -62,8 +62,8 @@ class _Column:
 
     def cell(self, text: str, end_in: float, *, color: str = page.EDGE) -> None:
         """A cell of the present line that ends at ``end_in``."""
-        x, look = AREA.left + end_in, {"size": page.SMALL, "color": color}
-        page.write(self.figure, x, self.y, text, ha="right", **look)
+        look: dict[str, Any] = {"size": page.SMALL, "color": color, "ha": "right"}
+        page.write(self.figure, AREA.left + end_in, self.y, text, **look)
 
     def sample(self, ends_in: Sequence[float], **look: Any) -> None:
         """A sample at the present line."""
@@ -165,7 +165,7 @@ def _lines(column: _Column) -> None:
     column.line("equal heights", left_in=words)
     column.sample((0.0, SAMPLE_IN), color=page.LEVEL, lw=HAIR)
     column.line(
-        f"{MARKED_FROM_M:.2f} m (200 ft): above it marking and lighting rules may apply",
+        f"{MARKED_FROM_M:.2f} m (200 ft): marking and lighting rules may apply",
         left_in=words,
     )
     column.sample((0.0, SAMPLE_IN), color=page.QUIET, lw=HAIR, ls=page.ZONE_DOTS)

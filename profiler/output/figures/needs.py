@@ -74,7 +74,7 @@ def criteria_lines(radio: "RadioAnswer", scale: Scale) -> list[str]:
 
     result = radio.result
     rest = [r for r in result.results if r is not result.governing]
-    several, lines = bool(rest), []
+    several, lines = has_rule(radio) and bool(rest), []
     for one in [result.governing, *rest][:MOST_CRITERIA]:
         what = criterion_text(criterion_record(one.criterion))
         governs = ", governs" if several and one is result.governing else ""

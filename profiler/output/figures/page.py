@@ -5,7 +5,6 @@ from pathlib import Path
 from typing import Any, Final, Literal, NamedTuple
 
 import matplotlib as mpl
-from matplotlib.artist import Artist
 from matplotlib.axes import Axes
 from matplotlib.backends.backend_agg import FigureCanvasAgg
 from matplotlib.figure import Figure
@@ -200,10 +199,10 @@ def renderer_of(figure: Figure) -> Any:
     return canvas.get_renderer()  # type: ignore[no-untyped-call]
 
 
-def width_in(figure: Figure, artist: Artist) -> float:
-    """Width of an artist on the page [in]."""
-    box = artist.get_window_extent(renderer_of(figure))
-    return float(box.width) / float(figure.dpi)
+def width_in(figure: Figure, artist: Text, *, dpi: float = PNG_DPI) -> float:
+    """Width of a text on the page [in], hinted for so many pixels an inch."""
+    box = artist.get_window_extent(renderer_of(figure), dpi=dpi)
+    return float(box.width) / dpi
 
 
 def fit(

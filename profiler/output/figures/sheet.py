@@ -7,7 +7,7 @@ from matplotlib.figure import Figure
 
 from profiler.output.figures import page
 from profiler.output.figures.scale import Scale
-from profiler.output.numbers import ratio
+from profiler.output.numbers import ratio, rounded_text
 
 if TYPE_CHECKING:  # a walker's figure need not load the radio room
     from profiler.radio.answer import RadioAnswer
@@ -21,6 +21,8 @@ HEAD_GAP_IN: Final = 0.06
 KE_END_IN: Final = 0.4
 CLEAR_END_IN: Final = 1.35
 SHARE_END_IN: Final = 2.0
+#: Decimals of a share of F1 [1].
+SHARE_DECIMALS: Final = 2
 
 Json = dict[str, Any]
 
@@ -55,7 +57,7 @@ def beside_lines(radio: Json, scale: Scale) -> list[str]:
         lines += [
             f"beside the path at {show.distance(side['distance_m'])},",
             f"{show.height(side['offset_m'])} {side['side']}: "
-            f"{ratio(side['f1_share'], 2)} of F1",
+            f"{ratio(side['f1_share'], SHARE_DECIMALS)} of F1",
         ]
     if mirror is not None:
         lines += [
@@ -111,7 +113,7 @@ def _airs(figure: Figure, y: float, radio: Json, scale: Scale) -> float:
     rows = [("ke", f"clear by, {scale.height_unit}", "of F1", page.QUIET)]
     for air in radio["by_ke"]:
         clear = scale.show.bare_height(air["clearance_m"])
-        share = ratio(air["f1_share"], 2)
+        share = rounded_text(air["f1_share"], SHARE_DECIMALS)
         rows.append((ke_words(air["ke"]), clear, share, page.EDGE))
     for ke, clear, share, color in rows:
         for text, end in (

@@ -1,7 +1,7 @@
 """The words around the drawings: headline, both ends, table of discs."""
 
 from collections.abc import Sequence
-from typing import Final
+from typing import Any, Final
 
 from matplotlib.figure import Figure
 
@@ -127,8 +127,8 @@ def _row(figure: Figure, y_in: float, texts: Sequence[str], color: str) -> None:
     area = page.TABLE_AREA
     for text, (x, side) in zip(texts, _COLUMNS, strict=True):
         if text:
-            at, look = area.left + x, {"size": page.SMALL, "color": color}
-            artist = page.write(figure, at, y_in, text, ha=side, **look)
+            look: dict[str, Any] = {"size": page.SMALL, "color": color, "ha": side}
+            artist = page.write(figure, area.left + x, y_in, text, **look)
             if x == NOTE_IN:
                 page.fit(figure, artist, area.width - x, least_pt=page.SMALL)
 

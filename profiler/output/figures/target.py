@@ -15,6 +15,8 @@ from profiler.output.figures.scale import Scale, nice_ticks, tick_texts
 RAY_TIMES: Final = 3.0
 #: Least range of a drawing [m]; our choice.
 LEAST_RANGE_M: Final = 1.0
+#: A ray this little above a bare target is the target's own [m]; the record's digit.
+LEAST_RAY_M: Final = 0.001
 #: Room above and ground below [1 of range].
 ROOM_ABOVE: Final = 0.1
 ROOM_BELOW: Final = 0.12
@@ -74,7 +76,9 @@ def draw_target(ax: Axes, course: Course, scale: Scale) -> Axes:
 def has_drawing(course: Course) -> bool:
     """Whether there is a height to draw: the target's or the ray's over it."""
     ray = ray_above_foot_m(course)
-    return course.line.target.height_m > 0.0 or (ray is not None and ray > 0.0)
+    return course.line.target.height_m > 0.0 or (
+        ray is not None and ray > LEAST_RAY_M
+    )
 
 
 def range_m(course: Course) -> float:

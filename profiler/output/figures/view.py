@@ -116,7 +116,7 @@ def draw_enlarged(
 
 
 def _window(course: Course) -> tuple[float, float]:
-    """Start and end of the path shown [m]: round the decisive point, within the path."""
+    """Start and end of the path shown [m]: round the decisive point, on the path."""
     line = course.line
     length = line.path.length_m
     middle = length if line.decisive is None else line.decisive.distance_m

@@ -30,11 +30,11 @@ class Zone:
 
     Notes
     -----
-    The rule's line stands where its governing criterion wants all ground to stay below:
-    the straight ray at that criterion's own ke, less its share of F1, less its extra
-    metres. Whatever air the drawing shows, each height is put on paper as ground of that
-    height would be, so that the distance from ground to the rule's line is what the
-    criterion leaves, to scale, everywhere.
+    The rule's line stands where its governing criterion wants all ground to stay
+    below: the straight ray at that criterion's own ke, less its share of F1, less its
+    extra metres. Whatever air the drawing shows, each height is put on paper as ground
+    of that height would be, so that the distance from ground to the rule's line is
+    what the criterion leaves, to scale, everywhere.
     """
 
     radio: "RadioAnswer"
