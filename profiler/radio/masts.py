@@ -20,8 +20,8 @@ CURVE_POINTS: Final = 41
 CURVE_REACH: Final = 4.0
 #: Cuts of an interval of heights, and how often it is cut [1]: a kilometre to a
 #: tenth of a micrometre.
-CUTS: Final = 1001
-TIMES: Final = 4
+CUTS: Final = 101
+TIMES: Final = 5
 #: Metres at the far end for a metre at the near one from which on a point of the curve
 #: is tried along the whole path [1]; our choice: the cut misses 0.02 mm at most.
 STEEP: Final = 20.0

@@ -71,8 +71,6 @@ def find_obstruction(
 
 def _runs(at: Tight, length_m: float) -> Obstruction:
     inside = at.share < PART_F1
-    # beside an end the zone is so thin that grazing to a millimetre is outside it
-    inside[np.argmin(at.clear_m)] = True
     edges = np.flatnonzero(np.diff(np.concatenate([[False], inside, [False]])))
     starts, ends = at.dist_m[edges[::2]], at.dist_m[edges[1::2] - 1]
     short = ends[-1] - starts[0] <= ISOLATED_SHARE * length_m

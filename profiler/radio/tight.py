@@ -18,7 +18,7 @@ from profiler.sight.ground import Ground, Quadratic, quadratic
 from profiler.sight.line import Line
 
 #: Largest error of the parabola through three samples of the zone's radius, as a share
-#: of their spread [1]: 0.14 for a square root from 0, 0.25 for a whole path in one piece.
+#: of their spread [1]: 0.14 for a square root from 0, 0.25 for a whole path as a piece.
 PARABOLA_MISS: Final = 0.3
 #: Room for rounding in that comparison [m].
 ROUNDING_M: Final = 1e-6
@@ -127,7 +127,7 @@ def _may_be_lowest(
     first: Tight, criterion: Criterion, fit: Quadratic, vertex: FloatArray
 ) -> BoolArray:
     """(k,) pieces that may hold the lowest place, by their (k, 3) samples."""
-    low = np.fmin(np.min(first.left_m, axis=1), fit.at(vertex))
+    low = np.fmin(np.minimum.reduce(first.left_m.T), fit.at(vertex))
     miss = criterion.f1_fraction * parabola_miss(first.f1_m)
     may: BoolArray = low - miss <= np.min(first.left_m) + ROUNDING_M
     return may
@@ -148,8 +148,8 @@ def _evaluate(
 
 def parabola_miss(f1_m: FloatArray) -> FloatArray:
     """(k,) bound on what the parabola through (k, 3) radii misses of the zone [m]."""
-    miss: FloatArray = PARABOLA_MISS * (np.max(f1_m, axis=1) - np.min(f1_m, axis=1))
-    return miss
+    spread: FloatArray = np.maximum.reduce(f1_m.T) - np.minimum.reduce(f1_m.T)
+    return PARABOLA_MISS * spread
 
 
 def _lowest_u(

@@ -15,8 +15,9 @@ from profiler.terrain.dem import Terrain
 from profiler.terrain.lattice import Lattice, Tile
 from profiler.terrain.raster import BLOCK_CACHE_BYTES, to_metres
 
-#: Most posts read along either side of a grid [1]; our choice, 8 MB of heights.
-MOST_POSTS: Final = 1000
+#: Most posts read along either side of a grid [1]; our choice: two for each cell of a
+#: small map.
+MOST_POSTS: Final = 520
 
 
 def ground_grid(
@@ -43,7 +44,7 @@ def ground_grid(
 
     Notes
     -----
-    Of each grid at most 1000 x 1000 posts are read, every k-th one where the window
+    Of each grid at most 520 x 520 posts are read, every k-th one where the window
     is larger, so a map of a whole country costs no more than one of a valley.
     """
     ground = np.full(np.shape(lat_deg), np.nan)

@@ -12,11 +12,13 @@ import pytest
 from matplotlib.figure import Figure
 from PIL import Image
 
+from profiler.earth import plane_around
 from profiler.errors import InputError
 from profiler.output.figure import draw_figure, ground_map, save_figure
+from profiler.output.figures import page
 from profiler.output.figures.course import COLUMNS, course_of, thinned, trace_of
 from profiler.output.figures.marks import spread
-from profiler.output.figures.plan import bar_length, hillshade
+from profiler.output.figures.plan import _places, bar_length, hillshade
 from profiler.output.figures.scale import END_SHARE, nice_ticks
 from tests.plots.figure_cases import (
     HEADLINE,
@@ -195,3 +197,34 @@ def test_both_ends_stand_inside_the_axes(case_of: Callable[[str], Case]) -> None
     length = case_of("main").line.path.length_m / 1000.0
     assert low == pytest.approx(-END_SHARE * length)
     assert high == pytest.approx((1.0 + END_SHARE) * length)
+
+
+@pytest.mark.parametrize("lat_deg", [0.0, 48.0, -79.0, 88.0])
+def test_the_maps_places_are_the_planes_own_within_a_tenth_of_a_cell(
+    lat_deg: float,
+) -> None:
+    # at 179.9 degrees the map lies across the date line
+    plane = plane_around(lat_deg, 179.9)
+    cell = 2000.0
+    east = (np.arange(150) - 74.5) * cell
+    north = (89.5 - np.arange(180)) * cell
+    lat, lon = _places(plane, east, north)
+    grid_x, grid_y = np.meshgrid(east, north)
+    exact_lat, exact_lon = (
+        v.reshape(grid_x.shape) for v in plane.to_wgs84(grid_x.ravel(), grid_y.ravel())
+    )
+    turn = (exact_lon - lon + 180.0) % 360.0 - 180.0
+    # 111.7 km is the longest degree of latitude on WGS84
+    off = np.hypot(exact_lat - lat, turn * np.cos(np.radians(lat))) * 111.7e3
+    assert off.max() < 0.1 * cell
+
+
+def test_a_png_has_no_alpha_and_states_its_pixels_an_inch(
+    case_of: Callable[[str], Case], tmp_path: Path
+) -> None:
+    figure = figure_of(case_of("main"))
+    save_figure(figure, tmp_path / "a.png", dpi=77.0)
+    with Image.open(tmp_path / "a.png") as image:
+        assert image.mode == "RGB"
+        assert image.info["dpi"] == pytest.approx((77.0, 77.0), abs=0.02)
+    assert figure.dpi == page.PNG_DPI

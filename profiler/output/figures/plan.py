@@ -9,7 +9,7 @@ from matplotlib.axes import Axes
 from matplotlib.figure import Figure
 from matplotlib.lines import Line2D
 
-from profiler.earth import plane_around, points_at
+from profiler.earth import Projector, plane_around, points_at
 from profiler.model import BoolArray, FloatArray, GeodesicPath
 from profiler.model.arrays import frozen
 from profiler.output.figures import page
@@ -26,6 +26,10 @@ PAD: Final = 0.14
 CELLS: Final = 260
 #: and at least so many, however far apart the posts are [1].
 LEAST_CELLS: Final = 8
+#: Nodes along a side at which the map's places are worked out exactly [1].
+NODES: Final = 17
+#: Nearer to a pole every place of the map is worked out [deg].
+EVEN_BELOW_DEG: Final = 80.0
 #: Points along the path on the map [1].
 PATH_POINTS: Final = 65
 #: A turn and half of it [deg].
@@ -99,14 +103,50 @@ def ground_map(terrain: Terrain, path: GeodesicPath) -> GroundMap:
     finest = finest_at(terrain, path.start)
     post_m = 0.0 if finest is None else finest.size_m
     east, north = _frame(x, y, path.length_m, post_m)
-    grid_x, grid_y = np.meshgrid(east, north)
-    grid_lat, grid_lon = plane.to_wgs84(grid_x.ravel(), grid_y.ravel())
-    ground = ground_grid(
-        terrain, grid_lat.reshape(grid_x.shape), grid_lon.reshape(grid_x.shape)
-    )
+    ground = ground_grid(terrain, *_places(plane, east, north))
     return GroundMap(
         east_m=east, north_m=north, ground_m=ground, path_east_m=x, path_north_m=y
     )
+
+
+def _places(
+    plane: Projector, east: FloatArray, north: FloatArray
+) -> tuple[FloatArray, FloatArray]:
+    """Latitude and longitude of the map's cells, (n, m) each [deg].
+
+    Worked out at some of them and bilinear between: below 80 degrees the rest are at
+    most 0.08 of a cell off at 450 km, 0.02 at 100 km (measured).
+    """
+    is_even = abs(plane.to_wgs84(np.zeros(1), np.zeros(1))[0][0]) < EVEN_BELOW_DEG
+    nodes = [_some(axis) if is_even else np.sort(axis) for axis in (east, north)]
+    x, y = np.meshgrid(*nodes)
+    found = plane.to_wgs84(x.ravel(), y.ravel())
+    return tuple(  # type: ignore[return-value]
+        _between(nodes, value.reshape(x.shape), east, north) for value in found
+    )
+
+
+def _some(axis: FloatArray) -> FloatArray:
+    """Rising nodes over an axis of the map, both ends among them [m]."""
+    return np.linspace(float(axis.min()), float(axis.max()), NODES)
+
+
+def _between(
+    nodes: list[FloatArray], value: FloatArray, east: FloatArray, north: FloatArray
+) -> FloatArray:
+    """Values at the nodes, bilinear at every cell; a date line is stepped over."""
+    weights = [
+        _weights(node, axis) for node, axis in zip(nodes, (east, north), strict=True)
+    ]
+    even = np.unwrap(np.unwrap(value, period=TURN_DEG, axis=1), period=TURN_DEG, axis=0)
+    grid: FloatArray = weights[1] @ even @ weights[0].T
+    return grid
+
+
+def _weights(node: FloatArray, axis: FloatArray) -> FloatArray:
+    """(len(axis), len(node)) shares of the two nodes beside each place."""
+    at = np.interp(axis, node, np.arange(node.size, dtype=np.float64))
+    return np.maximum(1.0 - np.abs(at[:, None] - np.arange(node.size)), 0.0)
 
 
 def _turned(lon_deg: float) -> float:

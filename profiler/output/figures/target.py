@@ -76,9 +76,7 @@ def draw_target(ax: Axes, course: Course, scale: Scale) -> Axes:
 def has_drawing(course: Course) -> bool:
     """Whether there is a height to draw: the target's or the ray's over it."""
     ray = ray_above_foot_m(course)
-    return course.line.target.height_m > 0.0 or (
-        ray is not None and ray > LEAST_RAY_M
-    )
+    return course.line.target.height_m > 0.0 or (ray is not None and ray > LEAST_RAY_M)
 
 
 def range_m(course: Course) -> float:
