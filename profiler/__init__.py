@@ -23,6 +23,11 @@ from profiler.model import (
     Verdict,
 )
 from profiler.output.answer import Answer, look
+from profiler.radio.criteria import Criterion, RuleSet
+from profiler.radio.delta_bullington import diffraction_loss
+from profiler.radio.limits import MastLimits
+from profiler.radio.plan import antenna_heights
+from profiler.radio.rule_sets import worst_month_ke
 from profiler.shapes import read_cover, read_sites
 from profiler.sight.cover_sources import cover_along
 from profiler.terrain import Terrain, open_terrain, sample_path
@@ -31,21 +36,26 @@ __all__ = [
     "VERSION",
     "Air",
     "Answer",
+    "Criterion",
     "DemError",
     "DemKind",
     "InputError",
     "Interpolation",
+    "MastLimits",
     "OutsideDemError",
     "Point",
     "ProfilerError",
+    "RuleSet",
     "Shown",
     "SightLine",
     "Station",
     "Terrain",
     "Verdict",
+    "antenna_heights",
     "apparent_size_deg",
     "conversion_table",
     "cover_along",
+    "diffraction_loss",
     "hidden_by_curvature_m",
     "horizon_dip_deg",
     "horizon_distance_m",
@@ -57,4 +67,5 @@ __all__ = [
     "read_cover",
     "read_sites",
     "sample_path",
+    "worst_month_ke",
 ]

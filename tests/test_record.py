@@ -36,8 +36,9 @@ CONTRACT = {
     "blocked_stretches.0": "start_m end_m worst_margin_m worst_at_m lat_deg lon_deg",
     "target": "height_m shown visible_m hidden_m visible_fraction visible_arcmin "
     "above_crest_m own_hill_m aim_moved_m point_shown",
-    "needed": "from_agl_m to_agl_m both_extra_m ke kr dem_bias_m",
-    "path": "distance_m azimuth_deg back_azimuth_deg samples void_samples",
+    "needed": "from_agl_m to_agl_m both_extra_m ke kr dem_bias_m dem_bias_at_m",
+    "path": "distance_m azimuth_deg back_azimuth_deg samples void_samples void_m",
+    "other_ground": "verdict margin_m at_m shown from_ground_m to_ground_m",
     "angles": "from_elevation_deg to_elevation_deg",
     "earth": "ke kr kappa_per_m radius_m effective_radius_m",
     "terrain": "files samples_sha256 dem_kind interpolation vertical_unit",
@@ -54,6 +55,7 @@ HELD_BY = {
     "first_block": "hidden",
     "blocked_stretches.0": "hidden",
     "void": "sea",
+    "other_ground": "survey",
 }
 #: Decimals by the ending of a field's name.
 DECIMALS = {"_m": 3, "_deg": 9, "_arcmin": 3, "ke": 6, "kr": 6, "_fraction": 6}

@@ -59,7 +59,7 @@ def test_a_file_called_none_is_a_rule_like_any_other(tmp_path: Path) -> None:
     assert made.name != "none"
 
 
-BAD = {
+BAD: dict[str, tuple[str | bytes, str]] = {
     "empty": ("", "needs tables"),
     "binary": (b"\x00\xff\xfe\x81", "is no TOML"),
     "no toml": ("ke = ", "is no TOML"),

@@ -65,7 +65,7 @@ def test_the_lowest_place_is_that_of_a_dense_scan_of_coarse_cells(
 def tight_over(
     heights: FloatArray, cell_m: float = 50.0
 ) -> tuple[list[int], FloatArray]:
-    dist = cell_m * np.arange(heights.size)
+    dist = np.linspace(0.0, cell_m * (heights.size - 1), heights.size)
     line = Line(float(dist[-1]), 60.0, 60.0, KAPPA)
     bare = Criterion(ke=4 / 3, f1_fraction=0.0)
     at = tight_places(line, pieces(dist, heights), bare, 0.05)

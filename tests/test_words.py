@@ -5,9 +5,11 @@ import re
 import pytest
 
 from profiler.output.numbers import DOWN, UP, Show, box, percent, rounded_text
-from tests.asking import HIDDEN, OWN_HILL, PART, SEA, answer_of, profile
-from tests.sheet import Sheet, read_all
+from tests.asking import HIDDEN, OWN_HILL, PART, SAMPLE, SEA, answer_of, profile
+from tests.sheet import Sheet
+from tests.sheet_lines import read_all
 
+COMBE = str(SAMPLE / "combe_fine.tif")
 BARE = ("--from", "Skarvel", "--to", "Wexel Hut")
 QUESTIONS = {
     "hidden": HIDDEN,
@@ -40,6 +42,20 @@ QUESTIONS = {
     "no ground at all, none that high": (
         *("--from", "48.205,-21.60", "--from-amsl", "50m"),
         *("--to", "48.21,-21.60", "--to-amsl", "60m", "--void-below", "20m"),
+    ),
+    "tight before the target": (
+        *("--from", "Quillet Mast", "--to", "Pellow Knowe", "--to-height", "5m"),
+        *("--from-height", "30m"),
+    ),
+    "tight before the eye": ("--from", "Cobbin Round", "--to", "Quillet Mast"),
+    "an end decides": ("--from", "Thrane Pike", "--to", "Sillet Brow"),
+    "the other end of a short path decides": (
+        *("--from", "48.20920,-21.50344", "--from-height", "40m"),
+        *("--to", "48.20930,-21.50600", "--to-height", "0.5m"),
+    ),
+    "two sizes of cell": ("--dem", COMBE, "--from", "Thrane Pike", "--to", "Skarvel"),
+    "hidden, with a void": (
+        *("--from", "Wexel Hut", "--to", "48.205,-21.60", "--to-amsl", "60m"),
     ),
     "short": ("--from", "Skarvel", "--to", "48.2093,-21.5045", "--from-height", "0"),
 }

@@ -28,13 +28,13 @@ would change the answer? You bring an elevation file (GeoTIFF) and two points.
 Try it on the invented sample upland:
   overbrow demo
 Ask about two points (latitude,longitude; heights above ground):
-  overbrow profile --dem upland.tif --from "48.20920,-21.50344" --from-height 20m \\
-    --to "48.32758,-21.17892" --to-height 30m
+  overbrow profile --dem sample_dem/upland.tif --from "48.20920,-21.50344" \\
+    --from-height 20m --to "48.32758,-21.17892" --to-height 30m
 Ask by name, draw the profile and keep the record:
-  overbrow profile --dem upland.tif --sites sites.csv --from Skarvel \\
-    --to "Thrane Pike" --figure profile.png --json profile.json
+  overbrow profile --dem sample_dem/upland.tif --sites sample_dem/sites.csv \\
+    --from Skarvel --to "Thrane Pike" --figure profile.png --json profile.json
 See what an elevation file is and what must be declared:
-  overbrow inspect upland.tif
+  overbrow inspect sample_dem/upland.tif
 
 More: overbrow --help, overbrow profile --help
 """

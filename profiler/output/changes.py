@@ -45,8 +45,10 @@ def openers(values: Json, show: Show) -> list[str]:
     if needed["dem_bias_m"] is not None:
         lower = show.height(-needed["dem_bias_m"], rounding=UP)
         other.append(f"all ground between {lower} lower")
-    if needed["kr"] is not None and needed["kr"] < KR_DUCT:
-        other.append(_kr_text(needed["kr"]))
+    if needed["kr"] is not None:
+        told = ratio(needed["kr"], 2, rounding=UP)
+        if float(told) < KR_DUCT:
+            other.append(f"kr {told}{_doubt(needed['kr'])}")
     if other:
         lines.append(("or " if lines else "") + "; or ".join(other))
     if lines and values["path"]["void_m"] > 0.0:
@@ -66,9 +68,8 @@ def _set_by(sets: list[int | None]) -> str:
     return "   (set by " + ", ".join(str(s) for s in known) + " in turn)"
 
 
-def _kr_text(kr: float) -> str:
-    doubt = ", more than you may count on" if kr > KR_TO_COUNT_ON else ""
-    return f"kr {ratio(kr, 2, rounding=UP)}{doubt}"
+def _doubt(kr: float) -> str:
+    return ", more than you may count on" if kr > KR_TO_COUNT_ON else ""
 
 
 def closers(values: Json, show: Show) -> list[str]:
@@ -94,11 +95,13 @@ def _tightest_ground(values: Json, show: Show) -> str:
     """The ground that the least rise closes: far off, or at an end's own feet."""
     at, length = values["needed"]["dem_bias_at_m"], values["path"]["distance_m"]
     eye, name = names_of(values)
-    if at < NEAR_M:
-        return f"ground {show.run(at)} from {eye}"
-    if at > length - NEAR_M:
-        return f"ground {show.run(length - at)} from {name}"
-    return f"ground at {show.distance(at)}"
+    off_m, end = min((at, eye), (length - at, name))
+    if off_m >= NEAR_M:
+        return f"ground at {show.distance(at)}"
+    run = show.run(off_m)
+    return (
+        f"ground beside {end}" if run == show.run(0.0) else f"ground {run} from {end}"
+    )
 
 
 def enough(values: Json, show: Show) -> list[str]:

@@ -3,7 +3,7 @@
 from typing import Any, Final
 
 from profiler.output.naming import capital, names_of
-from profiler.output.numbers import DOWN, Show, arcmin
+from profiler.output.numbers import DOWN, Show
 from profiler.output.standing import standing
 
 #: First word by verdict of the record.
@@ -92,7 +92,7 @@ def _seen(values: Json, show: Show) -> tuple[str, str]:
 def _part(values: Json, sees: str, show: Show) -> tuple[str, str]:
     target, rest = values["target"], values["horizon"]
     amount = show.height(target["visible_m"])
-    whole, angle = show.given(target["height_m"]), arcmin(target["visible_arcmin"])
+    whole, angle = show.given(target["height_m"]), show.arcmin(target["visible_arcmin"])
     there = standing(rest)
     it = "them" if there.is_plural else "it"
     return (

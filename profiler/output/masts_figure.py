@@ -90,6 +90,9 @@ def draw_masts(values: Json, *, show_in: str = "m") -> Figure:
     draw_trade_off(ax, values, frame)
     _axis_words(figure, frame, (capital(eye), capital(name)))
     _marked(figure, ax, frame)
+    if not values["curve"]:
+        x, y = AREA.left + AREA.width / 2.0, AREA.top - BELOW_IN
+        page.write(figure, x, y, "no pair of heights meets the rule", ha="center")
     draw_masts_key(figure, values, show)
     draw_foot(figure, _quiet(values), _cautions(values))
     return figure

@@ -77,6 +77,13 @@ class Show:
             return f"{value_m / self._height_unit_m:.0f} {self.unit}"
         return self.distance(value_m)
 
+    def arcmin(self, value: float) -> str:
+        """A small angle in minutes of arc; beside feet the sign ′ would be a foot's."""
+        sign = "′" if self.unit == "m" else " arcmin"
+        if value < HALF_TENTH:
+            return f"under 0.1{sign}"
+        return f"{value:.1f}{sign}"
+
     @property
     def distance_unit(self) -> str:
         """Unit of distances along the path."""
@@ -153,13 +160,6 @@ def _span(first: str, last: str) -> str:
 def place(lat_deg: float, lon_deg: float) -> str:
     """A place in latitude and longitude."""
     return f"{latitude(lat_deg)} {longitude(lon_deg)}"
-
-
-def arcmin(value: float) -> str:
-    """A small angle in minutes of arc."""
-    if value < HALF_TENTH:
-        return "under 0.1′"
-    return f"{value:.1f}′"
 
 
 def percent(share: float) -> str:

@@ -11,7 +11,6 @@ from profiler.output.naming import capital, names_of, printable
 from profiler.output.numbers import (
     DOWN,
     Show,
-    arcmin,
     count,
     latitude,
     longitude,
@@ -118,7 +117,7 @@ def _judged_for(values: Json) -> str:
 
 
 def _is_radio(values: Json) -> bool:
-    """Whether a frequency was given: without any known ground only a caution says so."""
+    """Whether a frequency was given; without known ground only a caution says so."""
     return any(note["code"] == RADIO_CODE for note in values["cautions"])
 
 
@@ -165,10 +164,11 @@ def _files(files: list[Json]) -> str:
     if not files:
         return "no file has any there"
     more = f" and {len(files) - 1} more" if len(files) > 1 else ""
-    sides = " x ".join(_side(side) for side in files[0]["cell_m"])
-    coarsest = max((f["cell_m"] for f in files), key=max)
-    if max(coarsest) > SAME_POSTS * max(files[0]["cell_m"]):
-        sides += f" to {' x '.join(_side(side) for side in coarsest)}"
+    cells = sorted((f["cell_m"] for f in files), key=max)
+    told = cells[:1]
+    if max(cells[-1]) > SAME_POSTS * max(cells[0]):
+        told.append(cells[-1])
+    sides = " to ".join(" x ".join(_side(side) for side in cell) for cell in told)
     return f"{printable(files[0]['name'])}{more}, posts {sides} m"
 
 
@@ -309,16 +309,12 @@ def _shown_clear(values: Json, show: Show) -> list[str]:
             share = percent(target["visible_fraction"])
             seen = show.height(target["visible_m"])
             amount = f"{seen} of {show.given(height)} ({share})"
-        lines.append(f"{known}{amount}, {arcmin(target['visible_arcmin'])} at the eye")
+        angle = show.arcmin(target["visible_arcmin"])
+        lines.append(f"{known}{amount}, {angle} at the eye")
     # looking down, "rises above the crest" would be true of the rays and read as false
-    is_far = crest is not None and crest["distance_m"] > NEAR_M
-    whole = height > 0.0 and target["shown"] == "whole"
-    if (
-        crest is not None
-        and is_far
-        and not whole
-        and values["to"]["amsl_m"] > (crest["ground_m"])
-    ):
+    is_higher = crest is not None and values["to"]["amsl_m"] > crest["ground_m"]
+    is_whole = height > 0.0 and target["shown"] == "whole"
+    if is_higher and crest["distance_m"] > NEAR_M and not is_whole:
         lines.append(
             f"{known}rises {show.height(target['above_crest_m'])} above the crest in "
             f"front at {show.distance(crest['distance_m'])}"

@@ -1,5 +1,6 @@
 """Figures on disk, thinning, the plan map and what is refused."""
 
+import io
 import subprocess
 import sys
 from collections.abc import Callable
@@ -14,11 +15,13 @@ from PIL import Image
 
 from profiler.earth import plane_around
 from profiler.errors import InputError
+from profiler.model import FloatArray
 from profiler.output.figure import draw_figure, ground_map, save_figure
 from profiler.output.figures import page
 from profiler.output.figures.course import COLUMNS, course_of, thinned, trace_of
 from profiler.output.figures.marks import spread
 from profiler.output.figures.plan import _places, bar_length, hillshade
+from profiler.output.figures.png import png_bytes
 from profiler.output.figures.scale import END_SHARE, nice_ticks
 from tests.plots.figure_cases import (
     HEADLINE,
@@ -159,7 +162,7 @@ def test_a_missing_folder_and_a_folder_as_file_are_refused(
 def test_a_write_that_fails_leaves_the_old_file_and_nothing_beside(
     case_of: Callable[[str], Case], tmp_path: Path, monkeypatch: pytest.MonkeyPatch
 ) -> None:
-    target = tmp_path / "a.png"
+    target = tmp_path / "a.svg"
     target.write_bytes(b"old")
 
     def full(_: Figure, out: Any, **__: Any) -> None:
@@ -170,7 +173,7 @@ def test_a_write_that_fails_leaves_the_old_file_and_nothing_beside(
     with pytest.raises(InputError, match="No space left"):
         save_figure(figure_of(case_of("300 m")), target)
     assert target.read_bytes() == b"old"
-    assert [p.name for p in tmp_path.iterdir()] == ["a.png"]
+    assert [p.name for p in tmp_path.iterdir()] == ["a.svg"]
 
 
 def test_unknown_drawings_and_units_are_refused(case_of: Callable[[str], Case]) -> None:
@@ -206,8 +209,8 @@ def test_the_maps_places_are_the_planes_own_within_a_tenth_of_a_cell(
     # at 179.9 degrees the map lies across the date line
     plane = plane_around(lat_deg, 179.9)
     cell = 2000.0
-    east = (np.arange(150) - 74.5) * cell
-    north = (89.5 - np.arange(180)) * cell
+    east: FloatArray = (np.arange(150.0) - 74.5) * cell
+    north: FloatArray = (89.5 - np.arange(180.0)) * cell
     lat, lon = _places(plane, east, north)
     grid_x, grid_y = np.meshgrid(east, north)
     exact_lat, exact_lon = (
@@ -228,3 +231,12 @@ def test_a_png_has_no_alpha_and_states_its_pixels_an_inch(
         assert image.mode == "RGB"
         assert image.info["dpi"] == pytest.approx((77.0, 77.0), abs=0.02)
     assert figure.dpi == page.PNG_DPI
+
+
+def test_a_png_holds_the_pixels_it_was_given() -> None:
+    rng = np.random.default_rng(1)
+    pixels = rng.integers(0, 256, (7, 13, 3), dtype=np.uint8)
+    # read back by another program's decoder, which checks every checksum
+    with Image.open(io.BytesIO(png_bytes(pixels, 100.0))) as image:
+        assert np.array_equal(np.asarray(image), pixels)
+        assert image.info["dpi"] == pytest.approx((100.0, 100.0), abs=0.02)

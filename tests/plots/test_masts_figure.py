@@ -247,6 +247,9 @@ def test_looks_of_neighbouring_criteria_differ_without_colour(plan_of: Plans) ->
 def test_limits_that_nothing_meets_are_said_not_drawn(plan_of: Plans) -> None:
     _, figure = drawn(plan_of, "nothing")
     assert "none within the limits" in words_of(figure)
+    assert "no pair of heights meets the rule" in words_of(figure)
+    labels = {str(k.get_label()) for k in axes_of(figure, "masts").lines}
+    assert not any(label.startswith("criterion") for label in labels)
     assert any(t.startswith("No equal heights") for t in words_of(figure))
 
 

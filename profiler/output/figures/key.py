@@ -73,11 +73,13 @@ def draw_key(figure: Figure, ax: Axes) -> None:
     """Samples of what the profile shows, only what is there, in one row or two."""
     present = set(ax.get_legend_handles_labels()[1])
     area = page.KEY_AREA
-    sized = []
-    for entry in (e for e in _ENTRIES if e.label in present):
-        text = page.write(figure, 0.0, 0.0, entry.label, size=page.SMALL)
-        words = page.width_in(figure, text, dpi=SMALL_DPI)
-        sized.append(_Sized(entry, text, SAMPLE_IN + GAP_IN + words))
+    entries = [e for e in _ENTRIES if e.label in present]
+    texts = [page.write(figure, 0.0, 0.0, e.label, size=page.SMALL) for e in entries]
+    words = page.widths_in(texts, SMALL_DPI)
+    sized = [
+        _Sized(entry, text, SAMPLE_IN + GAP_IN + width)
+        for entry, text, width in zip(entries, texts, words, strict=True)
+    ]
     rows = _rows(sized, area.width)
     step = ROW_IN if len(rows) > 1 else 0.0
     top = area.bottom + page.BASELINE_IN + ROW_IN / 2.0 + step / 2.0

@@ -136,7 +136,9 @@ def _pairs(column: _Column, values: Json, show: Show) -> None:
 
 def _criteria(column: _Column, values: Json, show: Show) -> None:
     """Each criterion with its number, its line and what it leaves."""
-    column.head(f"rule {values['rule']['name']}: all of these hold on the line")
+    name, source = values["rule"]["name"], values["rule"]["source"]
+    what = "the rule given" if name == "given" else f"rule {name}"
+    column.head(f"{what}: all of these hold on the line")
     for number, (one, look) in enumerate(
         zip(values["criteria"], looks_of(values), strict=True), start=1
     ):
@@ -149,7 +151,7 @@ def _criteria(column: _Column, values: Json, show: Show) -> None:
     if at is not None:
         near, far = (show.height(at[k]) for k in ("from_agl_m", "to_agl_m"))
         column.line(f"left over with A at {near} and B at {far}", color=page.QUIET)
-    for text in textwrap.wrap(values["rule"]["source"], LINE_MOST):
+    for text in textwrap.wrap("" if name == "given" else source, LINE_MOST):
         column.line(text, color=page.QUIET)
 
 

@@ -6,7 +6,7 @@ from typing import Any, Final, Literal, NamedTuple
 
 import matplotlib as mpl
 from matplotlib.axes import Axes
-from matplotlib.backends.backend_agg import FigureCanvasAgg
+from matplotlib.backends.backend_agg import FigureCanvasAgg, RendererAgg
 from matplotlib.figure import Figure
 from matplotlib.font_manager import FontProperties, get_font
 from matplotlib.lines import Line2D
@@ -199,10 +199,16 @@ def renderer_of(figure: Figure) -> Any:
     return canvas.get_renderer()  # type: ignore[no-untyped-call]
 
 
-def width_in(figure: Figure, artist: Text, *, dpi: float = PNG_DPI) -> float:
-    """Width of a text on the page [in], hinted for so many pixels an inch."""
-    box = artist.get_window_extent(renderer_of(figure), dpi=dpi)
-    return float(box.width) / dpi
+def width_in(figure: Figure, artist: Text) -> float:
+    """Width of a text on the page [in]."""
+    box = artist.get_window_extent(renderer_of(figure))
+    return float(box.width) / float(figure.dpi)
+
+
+def widths_in(texts: list[Text], dpi: float) -> list[float]:
+    """Widths of texts on the page [in] when hinted for so many pixels an inch."""
+    ruler = RendererAgg(1, 1, dpi)  # type: ignore[no-untyped-call]
+    return [float(t.get_window_extent(ruler, dpi=dpi).width) / dpi for t in texts]
 
 
 def fit(

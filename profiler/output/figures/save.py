@@ -8,15 +8,12 @@ import matplotlib as mpl
 import numpy as np
 from matplotlib.backends.backend_agg import FigureCanvasAgg
 from matplotlib.figure import Figure
-from PIL import Image
 
 from profiler.errors import InputError
 from profiler.output.figures.page import PNG_DPI
+from profiler.output.figures.png import png_bytes
 from profiler.output.files import write_whole
 
-#: How hard a PNG is packed: as small as level 6 and faster (measured). Without its
-#: alpha, which is solid everywhere, packing takes two thirds of the time.
-PNG_LEVEL: Final = 2
 #: What keeps the ids in an SVG the same from run to run.
 SALT: Final = "overbrow"
 
@@ -80,12 +77,14 @@ def _write(figure: Figure, path: Path, suffix: str, dpi: float) -> None:
 
 
 def _write_png(figure: Figure, out: BinaryIO, dpi: float) -> None:
-    """Pixels without alpha and nothing else but their number an inch."""
-    canvas, before = FigureCanvasAgg(figure), figure.dpi
+    """Pixels and nothing else but their number an inch."""
+    canvas, before = figure.canvas, figure.dpi
+    if not isinstance(canvas, FigureCanvasAgg):
+        canvas = FigureCanvasAgg(figure)  # the page's own has measured its text
     try:
         figure.set_dpi(dpi)
         canvas.draw()  # type: ignore[no-untyped-call]
-        pixels = Image.fromarray(np.asarray(canvas.buffer_rgba())).convert("RGB")
+        pixels = np.asarray(canvas.buffer_rgba())  # type: ignore[no-untyped-call]
+        out.write(png_bytes(pixels[:, :, :3], dpi))
     finally:
         figure.set_dpi(before)
-    pixels.save(out, format="png", compress_level=PNG_LEVEL, dpi=(dpi, dpi))
