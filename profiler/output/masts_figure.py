@@ -1,5 +1,6 @@
 """The figure of antenna heights: one against the other, on one A4 page."""
 
+import textwrap
 from typing import Any, Final, NamedTuple
 
 import numpy as np
@@ -40,6 +41,8 @@ LETTER_OFF: Final = 13.0
 LETTER_GAP: Final = 15.0
 #: Half the root of two [1]: along the curve's own direction.
 HALF_ROOT: Final = 0.5**0.5
+#: Characters of a line of cautions [1]; the page holds about 190.
+CAUTION_MOST: Final = 185
 #: Width of thin lines [pt].
 HAIR: Final = 0.8
 #: A quarter turn [deg].
@@ -273,4 +276,7 @@ def _quiet(values: Json) -> list[str]:
 
 
 def _cautions(values: Json) -> list[str]:
-    return [MASTS_CAUTION, values["cautions"][0]["text"]]
+    first, *rest = values["cautions"]
+    notes = [first, *(n for n in rest if n["code"].startswith("radio"))]
+    texts = [MASTS_CAUTION, *(note["text"] for note in notes)]
+    return [part for text in texts for part in textwrap.wrap(text, CAUTION_MOST)]

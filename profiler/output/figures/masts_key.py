@@ -11,7 +11,7 @@ from matplotlib.patches import Rectangle
 from profiler.output.figures import page
 from profiler.output.figures.masts_plan import looks_of, number_of, pairs_of
 from profiler.output.masts_words import MARKED_FROM_M
-from profiler.output.numbers import DOWN, UP, Show, ratio
+from profiler.output.numbers import DOWN, NEAREST, UP, Show, ratio
 from profiler.output.radio_words import criterion_text
 
 #: The column of words [in].
@@ -124,8 +124,11 @@ def _pairs(column: _Column, values: Json, show: Show) -> None:
             mew=page.RULE_WIDTH,
             ls="none",
         )
-        for height, end in zip(pair.heights_m, (NEAR_END_IN, FAR_END_IN), strict=True):
-            column.cell(show.bare_height(height, rounding=UP), end)
+        ends = (("from", NEAR_END_IN), ("to", FAR_END_IN))
+        for height, (role, end) in zip(pair.heights_m, ends, strict=True):
+            # a height found is rounded to the safe side, a given one is as given
+            way = NEAREST if pair.given == role else UP
+            column.cell(show.bare_height(height, rounding=way), end)
         if pair.governing is not None:
             column.cell(str(number_of(values, pair.governing)), GOVERNS_END_IN)
     if not pairs_of(values):
