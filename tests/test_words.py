@@ -43,6 +43,7 @@ QUESTIONS = {
         *("--from", "48.205,-21.60", "--from-amsl", "50m"),
         *("--to", "48.21,-21.60", "--to-amsl", "60m", "--void-below", "20m"),
     ),
+    "crest at the eye's feet": ("--from", "Sillet Brow", "--to", "Thrane Pike"),
     "tight before the target": (
         *("--from", "Quillet Mast", "--to", "Pellow Knowe", "--to-height", "5m"),
         *("--from-height", "30m"),
