@@ -30,6 +30,16 @@ US_SURVEY_FOOT_M: Final = 1200.0 / 3937.0
 MILE_M: Final = 5280.0 * FOOT_M
 #: One nautical mile [m]; exact by definition (1929).
 NAUTICAL_MILE_M: Final = 1852.0
+#: Units in which elevation files state heights, by the names used in options and
+#: records [m].
+HEIGHT_UNIT_M: Final = {"m": 1.0, "ft": FOOT_M, "us-ft": US_SURVEY_FOOT_M}
+
+#: One turn [deg]; the largest longitude too, for some files count from 0 to 360.
+TURN_DEG: Final = 360.0
+#: Half a turn [deg]; the antimeridian's longitude.
+HALF_TURN_DEG: Final = 180.0
+#: A quarter turn [deg]; the largest latitude.
+QUARTER_TURN_DEG: Final = 90.0
 #: Minutes of arc in a degree [1].
 ARCMIN_PER_DEG: Final = 60.0
 #: Metres in a kilometre [1].
@@ -40,6 +50,9 @@ M_PER_KM: Final = 1000.0
 GRAZING_M: Final = 0.001
 #: Height of an observer's eye when none is given [m]; common practice.
 EYE_M: Final = 1.7
+#: No ground lies lower [m]; with room, the Dead Sea's shore is near -440 (common
+#: knowledge, from memory).
+LOWEST_GROUND_M: Final = -500.0
 #: No ground stands higher; a void that only higher ground could block is clear [m].
 VOID_BELOW_M: Final = 9000.0
 #: Least radius of a summit's own hill [m]; our choice, docs/how-it-computes.md.

@@ -49,7 +49,7 @@ def test_reading_in_parts_changes_nothing(
     lat, lon = scattered(200, 0.03)
     whole = ground_at(ground, lat, lon)
     monkeypatch.setattr(at_points, "CHUNK_POINTS", 7)
-    monkeypatch.setattr(at_points, "CHUNK_POSTS", 50)
+    monkeypatch.setattr(windows, "WINDOW_POSTS", 50)
     assert np.array_equal(ground_at(ground, lat, lon), whole)
 
 

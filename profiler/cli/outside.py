@@ -5,8 +5,8 @@ from typing import Final
 
 import numpy as np
 
-from profiler.constants import M_PER_KM
-from profiler.earth import geodesic_path, points_at
+from profiler.constants import M_PER_KM, TURN_DEG
+from profiler.earth import geodesic_path, points_at, within_half_turn
 from profiler.errors import InputError, OutsideDemError
 from profiler.model import GeodesicPath, Point, Station
 from profiler.output.numbers import box, latitude, longitude
@@ -81,8 +81,9 @@ def _fits_exchanged(terrain: Terrain, point: Point) -> bool:
 
 def _exchanged_text(terrain: Terrain, point: Point, role: str) -> str:
     south, west, north, east = terrain.outline_deg()
+    turns = (-TURN_DEG, 0.0, TURN_DEG)
     what = f"Latitude {point.lat_deg:.9g}"
-    if not any(west <= point.lon_deg + turn <= east for turn in (-360.0, 0.0, 360.0)):
+    if not any(west <= point.lon_deg + turn <= east for turn in turns):
         what = f"Longitude {point.lon_deg:.9g}"
     elif south <= point.lat_deg <= north:
         what = f"{point.lat_deg:.9g}, {point.lon_deg:.9g}"
@@ -131,14 +132,13 @@ def _edge_of(terrain: Terrain, path: GeodesicPath, *, leaves: bool) -> float | N
 
 def _point_at(path: GeodesicPath, dist_m: float) -> Point:
     lat, lon = points_at(path, np.array([dist_m]))
-    turned = (float(lon[0]) + 180.0) % 360.0 - 180.0
-    return Point(lat_deg=float(lat[0]), lon_deg=turned)
+    return Point(lat_deg=float(lat[0]), lon_deg=within_half_turn(float(lon[0])))
 
 
 def _edge_text(terrain: Terrain, at: Point) -> str:
     """The side of the files' box that a place on their edge is nearest to."""
     south, west, north, east = terrain.outline_deg()
-    lon = at.lon_deg + 360.0 if at.lon_deg < west - (east - west) else at.lon_deg
+    lon = at.lon_deg + TURN_DEG if at.lon_deg < west - (east - west) else at.lon_deg
     squeeze = float(np.cos(np.radians(at.lat_deg)))
     off_lat = min(abs(at.lat_deg - south), abs(at.lat_deg - north))
     off_lon = min(abs(lon - west), abs(lon - east)) * squeeze

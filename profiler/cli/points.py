@@ -9,12 +9,9 @@ from profiler.cli.angles import Angle
 from profiler.cli.characters import LONGEST_TEXT, echo, one_alphabet
 from profiler.cli.iso6709 import lat_lon_from_iso_6709
 from profiler.cli.pairs import refuse_decimal_commas, refuse_pair, two_angles
+from profiler.constants import QUARTER_TURN_DEG, TURN_DEG
 from profiler.errors import InputError
 
-#: The largest latitude [deg].
-MAX_LATITUDE_DEG: Final = 90.0
-#: The largest longitude [deg]; some files count from 0 to 360.
-MAX_LONGITUDE_DEG: Final = 360.0
 #: A number above this is no angle but a distance on a grid [1]; our choice.
 GRID_ABOVE: Final = 1000.0
 #: The largest easting or northing taken [grid unit]; above the Earth's girth in feet.
@@ -171,19 +168,19 @@ def _lat_lon(first: Angle, second: Angle, *, plain: str, crs_given: bool) -> Lat
 
 
 def _in_range(lat_deg: float, lon_deg: float, *, lettered: bool = True) -> LatLon:
-    if abs(lat_deg) > MAX_LATITUDE_DEG:
+    if abs(lat_deg) > QUARTER_TURN_DEG:
         msg = f"Latitude {lat_deg:.9g} is outside -90 to 90 degrees."
         if (
             not lettered
-            and abs(lon_deg) <= MAX_LATITUDE_DEG
-            and abs(lat_deg) <= MAX_LONGITUDE_DEG
+            and abs(lon_deg) <= QUARTER_TURN_DEG
+            and abs(lat_deg) <= TURN_DEG
         ):
             msg += (
                 " With latitude and longitude exchanged the point fits: "
                 f'"{lon_deg:.9g},{lat_deg:.9g}".'
             )
         raise InputError(msg)
-    if abs(lon_deg) > MAX_LONGITUDE_DEG:
+    if abs(lon_deg) > TURN_DEG:
         msg = f"Longitude {lon_deg:.9g} is outside -360 to 360 degrees."
         raise InputError(msg)
     return LatLon(lat_deg, lon_deg)

@@ -9,7 +9,7 @@ import click
 
 from profiler.cli.points import EastingNorthing, LatLon, SiteName, parse_point
 from profiler.cli.quantities import ke_looks_like_kr
-from profiler.constants import EYE_M, KE_RADIO, SURVEY_GAP_M
+from profiler.constants import EYE_M, HALF_TURN_DEG, KE_RADIO, SURVEY_GAP_M, TURN_DEG
 from profiler.errors import InputError
 from profiler.model import Air, Point, Station
 from profiler.output.files import check_target
@@ -275,8 +275,8 @@ def box_text(places: Places) -> str:
     points = [places.station(role, None).point for role in ("from", "to")]
     lats = [p.lat_deg for p in points]
     lons = [p.lon_deg for p in points]
-    if max(lons) - min(lons) > 180.0:
-        lons = [lon % 360.0 for lon in lons]
+    if max(lons) - min(lons) > HALF_TURN_DEG:
+        lons = [lon % TURN_DEG for lon in lons]
     return box(
         min(lats) - BOX_ROOM_DEG,
         min(lons) - BOX_ROOM_DEG,

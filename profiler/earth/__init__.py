@@ -37,6 +37,7 @@ from profiler.earth.geodesic import (
     geodesic_line,
     geodesic_path,
     points_at,
+    within_half_turn,
 )
 from profiler.earth.projection import (
     Projector,
@@ -100,4 +101,5 @@ __all__ = [
     "prime_vertical_radius",
     "projector",
     "stated_text",
+    "within_half_turn",
 ]

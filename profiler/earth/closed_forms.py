@@ -9,11 +9,9 @@ from typing import cast
 
 import numpy as np
 
+from profiler.constants import QUARTER_TURN_DEG
 from profiler.earth.curvature import ScalarOrArray
 from profiler.errors import InputError
-
-#: A quarter turn [deg].
-QUARTER_TURN_DEG = 90.0
 
 
 def horizon_distance_m(height_m: ScalarOrArray, *, radius_m: float) -> ScalarOrArray:

@@ -5,17 +5,17 @@ from typing import NamedTuple
 import numpy as np
 from pyproj import Geod
 
-from profiler.constants import LONGEST_PATH_M, M_PER_KM
-from profiler.earth.curvature import euler_radius
+from profiler.constants import (
+    HALF_TURN_DEG,
+    LONGEST_PATH_M,
+    M_PER_KM,
+    QUARTER_TURN_DEG,
+    TURN_DEG,
+)
+from profiler.earth.curvature import ScalarOrArray, euler_radius
 from profiler.errors import InputError
 from profiler.model import FloatArray, GeodesicPath, Point
 
-#: One turn [deg].
-TURN_DEG = 360.0
-#: Half a turn [deg].
-HALF_TURN_DEG = 180.0
-#: A quarter turn [deg].
-QUARTER_TURN_DEG = 90.0
 #: Two points nearer than this are one place [m]; our choice, the record's millimetre.
 SAME_PLACE_M = 0.001
 
@@ -196,6 +196,22 @@ def distances_m(start: Point, lat_deg: FloatArray, lon_deg: FloatArray) -> Float
         np.full(lat.shape, start.lon_deg), here, np.asarray(lon_deg), lat
     )
     return np.asarray(length, dtype=np.float64)
+
+
+def within_half_turn(lon_deg: ScalarOrArray) -> ScalarOrArray:
+    """Longitude on the turn from −180 to 180.
+
+    Parameters
+    ----------
+    lon_deg : float or float64 array of any shape [deg]
+        A longitude that may have run past the antimeridian, or a difference of two.
+
+    Returns
+    -------
+    same shape [deg]
+        −180 <= longitude < 180.
+    """
+    return (lon_deg + HALF_TURN_DEG) % TURN_DEG - HALF_TURN_DEG
 
 
 def _unwrapped(lon_deg: FloatArray, path: GeodesicPath) -> FloatArray:

@@ -9,12 +9,10 @@ import numpy as np
 from pyproj import CRS, Transformer
 from pyproj.exceptions import CRSError, ProjError
 
-from profiler.constants import FOOT_M, US_SURVEY_FOOT_M
+from profiler.constants import HEIGHT_UNIT_M, TURN_DEG
 from profiler.errors import DemError, InputError
 from profiler.model import FloatArray
 
-#: One turn [deg].
-TURN_DEG = 360.0
 #: Confidence above which a CRS without a code is given the code it matches [%];
 #: our choice: name and definition agree.
 SURE_OF_CODE = 90
@@ -34,7 +32,6 @@ _WGS84_NAMES = ("worldgeodeticsystem1984", "wgs1984", "wgs84")
 _CODE = re.compile(r"\s*([A-Za-z]+)\s*:\s*([A-Za-z0-9_.]+)\s*")
 #: Axes of a three-dimensional CRS [1].
 _THREE_AXES = 3
-_VERTICAL_UNITS = (("m", 1.0), ("ft", FOOT_M), ("us-ft", US_SURVEY_FOOT_M))
 
 
 @dataclass(frozen=True, slots=True, kw_only=True, eq=False)
@@ -304,7 +301,7 @@ def _vertical(crs: CRS) -> tuple[str | None, str | None]:
     if axis.direction != "up":
         msg = f'"{part.name}" counts downwards (depths). Turn the sign of the heights.'
         raise DemError(msg)
-    for unit, metres in _VERTICAL_UNITS:
+    for unit, metres in HEIGHT_UNIT_M.items():
         if math.isclose(axis.unit_conversion_factor, metres, rel_tol=SAME_UNIT):
             return unit, datum
     msg = (

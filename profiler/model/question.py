@@ -4,7 +4,7 @@ import math
 from dataclasses import dataclass
 from numbers import Real
 
-from profiler.constants import KR_LIGHT
+from profiler.constants import HALF_TURN_DEG, KR_LIGHT, QUARTER_TURN_DEG, TURN_DEG
 from profiler.errors import InputError
 
 
@@ -35,14 +35,14 @@ class Point:
                 f"A point needs two finite numbers, not {self.lat_deg}, {self.lon_deg}."
             )
             raise InputError(msg)
-        if abs(self.lat_deg) > 90.0:
+        if abs(self.lat_deg) > QUARTER_TURN_DEG:
             msg = f"Latitude {self.lat_deg:g} is outside -90 to 90 degrees."
             raise InputError(msg)
-        if abs(self.lon_deg) > 360.0:
+        if abs(self.lon_deg) > TURN_DEG:
             msg = f"Longitude {self.lon_deg:g} is outside -360 to 360 degrees."
             raise InputError(msg)
-        if abs(self.lon_deg) > 180.0:
-            turned = self.lon_deg - math.copysign(360.0, self.lon_deg)
+        if abs(self.lon_deg) > HALF_TURN_DEG:
+            turned = self.lon_deg - math.copysign(TURN_DEG, self.lon_deg)
             object.__setattr__(self, "lon_deg", turned)
 
 

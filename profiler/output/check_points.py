@@ -15,6 +15,7 @@ from typing import Any, Final
 
 import numpy as np
 
+from profiler.constants import HALF_TURN_DEG
 from profiler.errors import InputError
 from profiler.model import SightLine
 from profiler.output.naming import capital, names_of, printable
@@ -32,8 +33,6 @@ SAME_PLACE_M: Final = 0.5
 FORMULA_SIGNS: Final = ("=", "+", "-", "@")
 #: Namespace of GPX 1.1.
 GPX: Final = "http://www.topografix.com/GPX/1/1"
-#: Longitude of the antimeridian [deg]; GPX 1.1 ends just before it.
-HALF_TURN_DEG: Final = 180.0
 GROUND: Final = "height of ground, and of trees or buildings on it"
 #: Where a station's ground came from, in words.
 GROUND_FROM: Final = {

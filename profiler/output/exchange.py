@@ -5,6 +5,7 @@ from typing import Any, Final
 
 import numpy as np
 
+from profiler.constants import HALF_TURN_DEG, TURN_DEG
 from profiler.earth import points_at
 from profiler.model import GeodesicPath, SightLine
 from profiler.output.record import record
@@ -69,17 +70,17 @@ def _point(fields: Json) -> Json:
 def _line(path: GeodesicPath, start_m: float, end_m: float) -> Json:
     dist = np.linspace(start_m, min(end_m, path.length_m), PATH_VERTICES)
     lat, lon = points_at(path, dist)
-    turn = np.floor((lon + 180.0) / 360.0)
+    turn = np.floor((lon + HALF_TURN_DEG) / TURN_DEG)
     parts: list[list[list[float]]] = [[]]
     for k in range(dist.size):
         if k and turn[k] != turn[k - 1]:
-            edge = 360.0 * max(turn[k], turn[k - 1]) - 180.0
+            edge = TURN_DEG * max(turn[k], turn[k - 1]) - HALF_TURN_DEG
             share = (edge - lon[k - 1]) / (lon[k] - lon[k - 1])
             at = float(lat[k - 1] + share * (lat[k] - lat[k - 1]))
-            side = 180.0 if turn[k] > turn[k - 1] else -180.0
+            side = HALF_TURN_DEG if turn[k] > turn[k - 1] else -HALF_TURN_DEG
             parts[-1].append(_position(side, at))
             parts.append([_position(-side, at)])
-        parts[-1].append(_position(float(lon[k] - 360.0 * turn[k]), float(lat[k])))
+        parts[-1].append(_position(float(lon[k] - TURN_DEG * turn[k]), float(lat[k])))
     if len(parts) == 1:
         return {"type": "LineString", "coordinates": parts[0]}
     return {"type": "MultiLineString", "coordinates": parts}

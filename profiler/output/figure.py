@@ -4,6 +4,7 @@ from typing import Final
 
 from matplotlib.figure import Figure
 
+from profiler.constants import QUARTER_TURN_DEG
 from profiler.model import SightLine
 from profiler.output.figures import page
 from profiler.output.figures.course import (
@@ -57,8 +58,6 @@ AXIS_WORDS_IN: Final = 0.15
 LINE_IN: Final = 0.15
 #: Words under the distances stand so far below them [in].
 DISTANCE_WORDS_IN: Final = 0.34
-#: Words that run upwards [deg].
-QUARTER_TURN_DEG: Final = 90.0
 
 
 def draw_figure(

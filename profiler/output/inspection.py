@@ -5,6 +5,7 @@ import math
 from collections.abc import Iterable, Iterator
 from typing import Any, Final
 
+from profiler.constants import TURN_DEG
 from profiler.model.note import Note
 from profiler.model.terrain import DemKind
 from profiler.output.numbers import count, latitude, longitude, place, ratio
@@ -114,7 +115,7 @@ def _lies(report: FileReport) -> Iterator[str]:
 
 def _within(lon_deg: float) -> float:
     """Longitude [deg] within ±180."""
-    return math.remainder(lon_deg, 360.0)
+    return math.remainder(lon_deg, TURN_DEG)
 
 
 def _registration(report: FileReport) -> str:

@@ -7,7 +7,7 @@ import numpy as np
 from matplotlib.axes import Axes
 from matplotlib.figure import Figure
 
-from profiler.constants import FOOT_M
+from profiler.constants import FOOT_M, QUARTER_TURN_DEG
 from profiler.model import FloatArray
 from profiler.output.figures import page
 from profiler.output.figures.foot import LINE_MOST, WHO, draw_foot, side_text
@@ -45,8 +45,6 @@ HALF_ROOT: Final = 0.5**0.5
 CAUTION_MOST: Final = 185
 #: Width of thin lines [pt].
 HAIR: Final = 0.8
-#: A quarter turn [deg].
-QUARTER_TURN_DEG: Final = 90.0
 
 Json = dict[str, Any]
 Spots = list[tuple[float, float]]

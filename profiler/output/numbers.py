@@ -4,7 +4,8 @@ import math
 from dataclasses import dataclass
 from typing import Final
 
-from profiler.constants import FOOT_M, M_PER_KM, MILE_M
+from profiler.constants import FOOT_M, HALF_TURN_DEG, M_PER_KM, MILE_M
+from profiler.earth import within_half_turn
 from profiler.errors import InputError
 
 #: Paths shorter than this are told in metres or feet [m]; our choice.
@@ -15,10 +16,6 @@ THREE_DECIMALS_BELOW: Final = 0.0095
 
 #: Decimals of a latitude or longitude in the words [1]; about a metre.
 DEG_DECIMALS: Final = 5
-
-#: A half and a whole turn of longitude [deg].
-HALF_TURN_DEG: Final = 180.0
-TURN_DEG: Final = 360.0
 
 #: Below these an angle would be told as 0.0′ [′] and a share as 0% [1].
 HALF_TENTH: Final = 0.05
@@ -143,9 +140,7 @@ def longitude(value_deg: float, decimals: int = DEG_DECIMALS) -> str:
 def box(south: float, west: float, north: float, east: float, *, decimals: int) -> str:
     """A box of latitude and longitude [deg]; east may run past 180."""
     west, east = (
-        lon
-        if abs(lon) <= HALF_TURN_DEG
-        else (lon + HALF_TURN_DEG) % TURN_DEG - HALF_TURN_DEG
+        lon if abs(lon) <= HALF_TURN_DEG else within_half_turn(lon)
         for lon in (west, east)
     )
     lats = _span(latitude(south, decimals), latitude(north, decimals))

@@ -9,7 +9,7 @@ from typing import Any, Final
 
 import numpy as np
 
-from profiler.constants import FOOT_M, TALLEST_MAST_M
+from profiler.constants import FOOT_M, HEIGHT_UNIT_M, TALLEST_MAST_M
 from profiler.earth.projection import Projector
 from profiler.errors import InputError
 from profiler.model import CoverKind, Note, Point
@@ -54,7 +54,6 @@ RADIUS_HEADINGS: Final = {
 COVER_NAME_HEADINGS: Final = ("name", "label", "title")
 KIND_HEADINGS: Final = ("kind", "type", "class", "cover")
 _NUMBER_AND_UNIT: Final = re.compile(r"(.*?)\s*(m|ft)?")
-_UNIT_M: Final = {"m": 1.0, "ft": FOOT_M}
 
 
 @dataclass(frozen=True, slots=True, kw_only=True, eq=False)
@@ -270,7 +269,7 @@ def _metres(text: str, unit_m: float, what: str, where: str) -> float:
     parts = _NUMBER_AND_UNIT.fullmatch(text)
     number, unit = (text, None) if parts is None else parts.groups()
     value = decimal_from(number, what=what, where=where)
-    value *= unit_m if unit is None else _UNIT_M[unit]
+    value *= unit_m if unit is None else HEIGHT_UNIT_M[unit]
     if what == "height":
         limits = f"0 to {TALLEST_MAST_M:g} m; it counts from bare ground, not the sea"
         is_one = 0.0 <= value <= TALLEST_MAST_M

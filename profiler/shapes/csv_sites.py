@@ -6,6 +6,7 @@ from dataclasses import dataclass
 from pathlib import Path
 from typing import Final
 
+from profiler.constants import QUARTER_TURN_DEG, TURN_DEG
 from profiler.errors import InputError
 from profiler.model import Point
 from profiler.shapes.site import (
@@ -31,10 +32,6 @@ LONGITUDE_HEADINGS: Final = (
 )
 _DELIMITERS: Final = (",", ";", "\t")
 _UTF16_MARKS: Final = (b"\xff\xfe", b"\xfe\xff")
-#: The largest latitude [deg].
-_MAX_LATITUDE_DEG: Final = 90.0
-#: A longitude beyond a full turn is none [deg].
-_MAX_LONGITUDE_DEG: Final = 360.0
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
@@ -172,15 +169,15 @@ def _point_of(lat: str, lon: str, *, where: str) -> Point:
             raise InputError(msg)
     lat_deg = decimal_from(lat, what="latitude", where=where)
     lon_deg = decimal_from(lon, what="longitude", where=where)
-    if _MAX_LATITUDE_DEG < abs(lat_deg) <= _MAX_LONGITUDE_DEG and (
-        abs(lon_deg) <= _MAX_LATITUDE_DEG
+    if QUARTER_TURN_DEG < abs(lat_deg) <= TURN_DEG and (
+        abs(lon_deg) <= QUARTER_TURN_DEG
     ):
         msg = (
             f"{where}: latitude {lat} is outside -90 to 90 degrees. With latitude and "
             "longitude exchanged the point fits."
         )
         raise InputError(msg)
-    if max(abs(lat_deg), abs(lon_deg)) > _MAX_LONGITUDE_DEG:
+    if max(abs(lat_deg), abs(lon_deg)) > TURN_DEG:
         msg = (
             f"{where}: {lat}, {lon} look like easting, northing; a table of sites "
             "needs latitude and longitude in degrees."

@@ -6,12 +6,9 @@ from collections.abc import Mapping, Sequence
 from dataclasses import dataclass
 from typing import Final
 
-from profiler.constants import FOOT_M, VOID_BELOW_M
+from profiler.constants import FOOT_M, LOWEST_GROUND_M, VOID_BELOW_M
 from profiler.errors import InputError
 from profiler.model import Note, Point
-
-#: No dry ground lies lower [m]; the Dead Sea's shore is near -440, from memory.
-LOWEST_GROUND_M: Final = -500.0
 
 #: Headings of the name, the most telling first.
 NAME_HEADINGS: Final = ("name", "site", "site_name", "station", "label", "title", "id")

@@ -19,6 +19,7 @@ from profiler.model import (
 from profiler.shapes import CoverShape, spans_along
 from profiler.sight.cover import canopy, covered, grown
 from profiler.terrain import Terrain, sample_path
+from profiler.terrain.dem import first_and_more
 
 CoverAlong = Callable[[GeodesicPath], PathCover]
 """Finds the cover along a path that is not known beforehand."""
@@ -169,9 +170,8 @@ def raster_cover(raster: Terrain, path: GeodesicPath) -> PathCover:
     first = profile.piece_start
     start, end = profile.dist_m[first], profile.dist_m[first + 2]
     height = profile.ground_m[first + 1]
-    file = raster.rasters[0].path.name
-    more = f" and {len(raster.rasters) - 1} more" if len(raster.rasters) > 1 else ""
-    name = f"cover raster {file}{more}"
+    files = first_and_more([file.path.name for file in raster.rasters])
+    name = f"cover raster {files}"
     notes = [note for note in profile.notes if note.code != "seam-step"]
     notes += _doubts(name, height)
     unknown = float(np.sum((end - start)[np.isnan(height)]))

@@ -2,15 +2,12 @@
 
 import numpy as np
 
-from profiler.constants import M_PER_KM, TALLEST_MAST_M, VOID_BELOW_M
+from profiler.constants import LOWEST_GROUND_M, M_PER_KM, TALLEST_MAST_M, VOID_BELOW_M
 from profiler.model import Bending, DemKind, EndReport, GeodesicPath, Note, PathProfile
 
 #: Shortest run of ground at exactly 0 that looks like filled sea or void [m]; our
 #: choice: longer than any beach a path runs along.
 ZERO_RUN_M = 1000.0
-#: Ground outside this range is no ground [m]: below the Dead Sea's shore or above
-#: the highest summit, with room (common knowledge, from memory).
-LOWEST_GROUND_M = -500.0
 #: A survey further than this from the DEM is questioned [m]; our choice: about the
 #: largest offset between a geoid and the ellipsoid in much of the world.
 ODD_SURVEY_M = 40.0

@@ -4,7 +4,7 @@ import math
 
 import numpy as np
 
-from profiler.earth import points_at
+from profiler.earth import points_at, within_half_turn
 from profiler.kernels.circle import elevation_tangent
 from profiler.model import (
     FloatArray,
@@ -26,7 +26,7 @@ VOID_STEPS = 4097
 def coordinates(path: GeodesicPath, dist_m: float) -> tuple[float, float]:
     """Latitude and longitude, within ±180, of a place on the path [deg]."""
     lat, lon = points_at(path, np.array([dist_m]))
-    return float(lat[0]), (float(lon[0]) + 180.0) % 360.0 - 180.0
+    return float(lat[0]), within_half_turn(float(lon[0]))
 
 
 def place_at(

@@ -11,6 +11,7 @@ import numpy as np
 from profiler.errors import DemError, InputError
 from profiler.model.note import Note
 from profiler.model.terrain import DemKind, Interpolation
+from profiler.terrain.findings import NO_DATUM_SHIFT
 from profiler.terrain.lattice import Lattice, group_rasters, outline_of
 from profiler.terrain.raster import Raster, read_header
 from profiler.terrain.units import checked_unit
@@ -160,7 +161,7 @@ def _header_notes(
     """What a reader must know about the files before any post is read."""
     silent = [r.path.name for r in rasters if r.unit_stated is None]
     if unit is None and silent:
-        text = f"{_names(silent)}: unit of heights not stated; metres are taken."
+        text = f"{first_and_more(silent)}: unit of heights not stated; metres are taken."
         yield Note(code="unit-not-stated", text=text)
     for stated in sorted({r.unit_stated for r in rasters if r.unit_stated}):
         if unit not in (None, stated):
@@ -173,14 +174,11 @@ def _header_notes(
         if lattice.crs.ballpark
     ]
     if rough:
-        text = (
-            f"{_names(rough)}: no exact shift from WGS84 to the file's datum is at "
-            "hand; places may be off by up to hundreds of metres."
-        )
+        text = f"{first_and_more(rough)}: {NO_DATUM_SHIFT}."
         yield Note(code="datum-shift", text=text)
 
 
-def _names(names: list[str]) -> str:
+def first_and_more(names: list[str]) -> str:
     """One file's name, or the first and how many more."""
     more = f" and {len(names) - 1} more" if len(names) > 1 else ""
     return f"{names[0]}{more}"

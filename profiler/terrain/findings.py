@@ -7,11 +7,11 @@ from typing import Final, NamedTuple
 import numpy as np
 import rasterio
 
-from profiler.constants import VOID_BELOW_M
+from profiler.constants import LOWEST_GROUND_M, VOID_BELOW_M
 from profiler.earth.projection import Projector
 from profiler.model.note import Note
 from profiler.model.terrain import DemKind
-from profiler.terrain.scan import LOWEST_GROUND_M, Tally
+from profiler.terrain.scan import Tally
 
 #: A decoded block above this makes every look-up slow [bytes]; our choice.
 HUGE_BLOCK_BYTES: Final = 16 * 2**20
@@ -25,6 +25,15 @@ _KIND_WORDS: Final = {
 }
 #: Tags in which makers say what a file is (common practice).
 _KIND_TAGS: Final = ("TIFFTAG_IMAGEDESCRIPTION", "TIFFTAG_DOCUMENTNAME")
+
+
+#: What a file without a sure way to WGS84 is told to be.
+NO_DATUM_SHIFT: Final = (
+    "no exact shift from WGS84 to the file's datum is at hand; places may be off by up "
+    "to hundreds of metres"
+)
+#: Bytes in the unit in which sizes of blocks are told [bytes].
+MIB: Final = 2**20
 
 
 class Declare(NamedTuple):
@@ -79,26 +88,21 @@ def file_notes(
 ) -> Iterator[Note]:
     """What is odd about the file, or makes it slow."""
     if crs is not None and crs.ballpark:
-        text = (
-            "no exact shift from WGS84 to the file's datum is at hand; places may be "
-            "off by up to hundreds of metres"
-        )
-        yield Note(code="datum-shift", text=text)
+        yield Note(code="datum-shift", text=NO_DATUM_SHIFT)
     post = np.dtype(dataset.dtypes[0]).itemsize
     rows, cols = dataset.block_shapes[0]
     block = rows * cols * post
     whole = dataset.height * dataset.width * post
-    mib = 2**20
     if block > HUGE_BLOCK_BYTES:
         text = (
-            f"one block decodes to {block / mib:.0f} MB, so every look-up is slow; "
+            f"one block decodes to {block / MIB:.0f} MB, so every look-up is slow; "
             "write the file again in tiles of 256 x 256"
         )
         yield Note(code="huge-blocks", text=text)
     elif cols == dataset.width and whole > HUGE_STRIPED_BYTES:
         text = (
             f"rows are stored whole, so a north-south path decodes up to "
-            f"{whole / mib:.0f} MB; write the file again in tiles of 256 x 256"
+            f"{whole / MIB:.0f} MB; write the file again in tiles of 256 x 256"
         )
         yield Note(code="huge-blocks", text=text)
     if dataset.driver == "VRT":

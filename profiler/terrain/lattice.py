@@ -1,4 +1,4 @@
-"""Files whose posts lie on one lattice, read as one grid.
+"""Files whose posts lie on one lattice: one grid.
 
 Tiles with the same CRS, cell and alignment are one grid, so that ground between the
 last post of one tile and the first of the next is interpolated like any other. On a
@@ -11,34 +11,22 @@ from dataclasses import dataclass
 from typing import Final, NamedTuple
 
 import numpy as np
-import rasterio
-from rasterio.errors import RasterioError
 
-from profiler.constants import SEAM_STEP_M
-from profiler.earth.geodesic import geodesic_line
+from profiler.constants import QUARTER_TURN_DEG
+from profiler.earth.geodesic import geodesic_line, within_half_turn
 from profiler.earth.projection import Projector
 from profiler.errors import DemError, InputError
-from profiler.model.arrays import FloatArray, IntArray
+from profiler.model.arrays import FloatArray
 from profiler.model.question import Point
-from profiler.terrain.raster import (
-    BLOCK_CACHE_BYTES,
-    Affine,
-    Raster,
-    read_posts,
-    stamp_of,
-)
+from profiler.terrain.raster import Affine, Raster
 
 #: Tiles whose posts lie this close to the lattice are on it [cells]; our choice.
 ALIGNED_CELLS: Final = 1e-3
 #: Cells whose sizes differ by less are equally fine [1]; our choice: the scale of a
 #: projection changes more across one zone.
 SAME_SIZE: Final = 1.01
-#: Degrees in a turn.
-TURN_DEG: Final = 360.0
 #: Places along each side of a file from which its outline is told [1]; our choice.
 OUTLINE_STEPS: Final = 17
-#: Files kept open at once; our choice, below any system's limit.
-MOST_OPEN: Final = 64
 
 
 class Tile(NamedTuple):
@@ -76,22 +64,38 @@ class Lattice:
 
     def to_posts(self, x: FloatArray, y: FloatArray) -> tuple[FloatArray, FloatArray]:
         """Column and row coordinates, whole numbers at posts, of CRS coordinates."""
-        t = self.affine
-        det = t.dx_col * t.dy_row - t.dx_row * t.dy_col
-        dx = np.asarray(x) - t.x0
-        dy = np.asarray(y) - t.y0
-        col = (dx * t.dy_row - dy * t.dx_row) / det
-        row = (dy * t.dx_col - dx * t.dy_col) / det
-        return col, row
+        return self.affine.posts(x, y)
 
     def to_crs(self, col: FloatArray, row: FloatArray) -> tuple[FloatArray, FloatArray]:
         """CRS coordinates of column and row coordinates."""
-        t = self.affine
-        col, row = np.asarray(col), np.asarray(row)
-        return (
-            t.x0 + t.dx_col * col + t.dx_row * row,
-            t.y0 + t.dy_col * col + t.dy_row * row,
-        )
+        return self.affine.at(np.asarray(row), np.asarray(col))
+
+    def posts_at(
+        self, lat_deg: FloatArray, lon_deg: FloatArray
+    ) -> tuple[FloatArray, FloatArray]:
+        """Column and row coordinates of places, on the turn nearest the lattice.
+
+        Parameters
+        ----------
+        lat_deg, lon_deg : (n,) float64 [deg]
+
+        Returns
+        -------
+        col, row : (n,) float64 [cells]
+            Infinite or NaN where the projection has no value.
+        """
+        with np.errstate(invalid="ignore"):
+            col, row = self.to_posts(*self.crs.to_crs(lat_deg, lon_deg))
+            if self.crs.is_geographic:
+                turn = self.columns_in_turn
+                middle = (self.cols[0] + self.cols[1] - 1) / 2.0
+                col = col + turn * np.round((middle - col) / turn)
+        return col, row
+
+    @property
+    def columns_in_turn(self) -> float:
+        """Columns in 360 degrees of a geographic lattice, whole or not [1]."""
+        return self.crs.turn / abs(self.affine.dx_col)
 
 
 def group_rasters(rasters: Sequence[Raster]) -> tuple[Lattice, ...]:
@@ -132,10 +136,8 @@ def _offset_on(first: Raster, other: Raster) -> tuple[int, int] | None:
     drift = np.abs(np.subtract(b, a))[[1, 2, 4, 5]].max() * max(other.rows, other.cols)
     if drift > ALIGNED_CELLS * cell:
         return None
-    det = a.dx_col * a.dy_row - a.dx_row * a.dy_col
-    dx, dy = b.x0 - a.x0, b.y0 - a.y0
-    col = (dx * a.dy_row - dy * a.dx_row) / det
-    row = (dy * a.dx_col - dx * a.dy_col) / det
+    at_col, at_row = a.posts(np.array(b.x0), np.array(b.y0))
+    col, row = float(at_col), float(at_row)
     if max(abs(col - round(col)), abs(row - round(row))) > ALIGNED_CELLS:
         return None
     return round(row), round(col)
@@ -183,14 +185,11 @@ def _on_near_turns(tiles: list[Tile], turn: int) -> list[Tile]:
 
 def _cell_of(raster: Raster) -> tuple[float, float]:
     """Ground distances between neighbouring posts at the middle of a file [m]."""
-    t = raster.affine
     row, col = raster.rows / 2.0 - 0.5, raster.cols / 2.0 - 0.5
     cols = np.array([col, col, col + 1.0])
     rows = np.array([row, row + 1.0, row])
-    x = t.x0 + t.dx_col * cols + t.dx_row * rows
-    y = t.y0 + t.dy_col * cols + t.dy_row * rows
-    lat, lon = raster.crs.to_wgs84(x, y)
-    if not (np.all(np.isfinite(lat)) and np.all(np.abs(lat) <= 90.0)):
+    lat, lon = raster.crs.to_wgs84(*raster.affine.at(rows, cols))
+    if not (np.all(np.isfinite(lat)) and np.all(np.abs(lat) <= QUARTER_TURN_DEG)):
         msg = (
             f'"{raster.path.name}" lies outside its own coordinate system '
             f"({raster.crs.crs_name}). Check its CRS and its place."
@@ -198,7 +197,7 @@ def _cell_of(raster: Raster) -> tuple[float, float]:
         raise DemError(msg)
     try:
         here, down, along = (
-            Point(lat_deg=float(a), lon_deg=(float(b) + 180.0) % TURN_DEG - 180.0)
+            Point(lat_deg=float(a), lon_deg=within_half_turn(float(b)))
             for a, b in zip(lat, lon, strict=True)
         )
         cell = (geodesic_line(here, down).length_m, geodesic_line(here, along).length_m)
@@ -220,150 +219,3 @@ def outline_of(lattice: Lattice) -> tuple[float, float, float, float]:
     rows = np.concatenate([np.full_like(unit, r0), np.full_like(unit, r1), down, down])
     lat, lon = lattice.crs.to_wgs84(*lattice.to_crs(cols, rows))
     return float(lat.min()), float(lon.min()), float(lat.max()), float(lon.max())
-
-
-class Window(NamedTuple):
-    """Posts of a lattice in metres."""
-
-    height_m: FloatArray
-    """(rows, cols); NaN where no tile has ground."""
-    owner: IntArray
-    """(rows, cols); number of the file each post came from, −1 where void."""
-
-
-def _opened(raster: Raster) -> "rasterio.DatasetReader":
-    """A file opened for its posts, refused when it is no longer the one it was."""
-    name = raster.path.name
-    try:
-        changed = stamp_of(raster.path) != raster.stamp
-        dataset = rasterio.open(raster.path)
-    except (RasterioError, OSError) as error:
-        msg = f'"{name}" can no longer be opened.'
-        raise DemError(msg) from error
-    if changed:
-        dataset.close()
-        msg = f'"{name}" has changed since it was opened. Open the terrain again.'
-        raise DemError(msg)
-    return dataset
-
-
-class PostReader:
-    """Reads windows of posts; keeps files open while it is in use.
-
-    Notes
-    -----
-    Not a value object: use it in a ``with`` block and in one thread.
-    """
-
-    def __init__(self) -> None:
-        self._open: dict[int, rasterio.DatasetReader] = {}
-        self._env = rasterio.Env(GDAL_CACHEMAX=BLOCK_CACHE_BYTES)
-        self.fillers: dict[int, tuple[int, int, int]] = {}
-        """By file: count of untagged fillers read, row and column of the first."""
-        self.steps: dict[tuple[int, int], float] = {}
-        """By pair of overlapping files: largest median step seen [m]."""
-
-    def __enter__(self) -> "PostReader":
-        """Take the settings under which files are read."""
-        self._env.__enter__()
-        return self
-
-    def __exit__(self, *exc: object) -> None:
-        """Close every file."""
-        for dataset in self._open.values():
-            dataset.close()
-        self._open.clear()
-        self._env.__exit__(*exc)
-
-    def _dataset(self, tile: Tile) -> "rasterio.DatasetReader":
-        dataset = self._open.pop(tile.number, None)
-        if dataset is None:
-            if len(self._open) >= MOST_OPEN:
-                self._open.pop(next(iter(self._open))).close()
-            dataset = _opened(tile.raster)
-        self._open[tile.number] = dataset
-        return dataset
-
-    def window(
-        self, lattice: Lattice, row: int, col: int, rows: int, cols: int
-    ) -> Window:
-        """Posts row … row+rows−1, col … col+cols−1 of the lattice, void outside.
-
-        Raises
-        ------
-        DemError
-            If a file is damaged.
-        """
-        height = np.full((rows, cols), np.nan)
-        owner = np.full((rows, cols), -1, dtype=np.int64)
-        for tile in lattice.tiles:
-            for turn in _turns(lattice, tile, col, cols):
-                self._fill(tile, turn, (row, col), height, owner)
-        return Window(height, owner)
-
-    def _fill(
-        self,
-        tile: Tile,
-        turn: int,
-        corner: tuple[int, int],
-        height: FloatArray,
-        owner: IntArray,
-    ) -> None:
-        """Put one tile's posts, shifted by a turn, where nothing is yet."""
-        row, col = corner
-        top, left = tile.row, tile.col + turn
-        r0, r1 = max(row, top), min(row + height.shape[0], top + tile.raster.rows)
-        c0, c1 = max(col, left), min(col + height.shape[1], left + tile.raster.cols)
-        if r0 >= r1 or c0 >= c1:
-            return
-        part = (slice(r0 - row, r1 - row), slice(c0 - col, c1 - col))
-        taken = owner[part] >= 0
-        posts = read_posts(
-            self._dataset(tile), tile.raster, r0 - top, c0 - left, r1 - r0, c1 - c0
-        )
-        self._note_fillers(tile, posts.filler, r0 - top, c0 - left)
-        known = np.isfinite(posts.height_m)
-        self._note_overlap(tile, height[part], posts.height_m, owner[part])
-        put = known & ~taken
-        height[part][put] = posts.height_m[put]
-        owner[part][put] = tile.number
-
-    def _note_fillers(self, tile: Tile, filler: np.ndarray, row: int, col: int) -> None:
-        found = int(np.count_nonzero(filler))
-        if found:
-            r, c = np.argwhere(filler)[0]
-            before = self.fillers.get(tile.number, (0, row + int(r), col + int(c)))
-            self.fillers[tile.number] = (before[0] + found, before[1], before[2])
-
-    def _note_overlap(
-        self, tile: Tile, old: FloatArray, new: FloatArray, owner: IntArray
-    ) -> None:
-        for other in np.unique(owner[owner >= 0]):
-            gap = (new - old)[(owner == other) & np.isfinite(new)]
-            if gap.size == 0:
-                continue
-            step = float(np.median(gap))
-            pair = (int(other), tile.number)
-            if abs(step) > max(SEAM_STEP_M, abs(self.steps.get(pair, 0.0))):
-                self.steps[pair] = step
-
-
-def tiles_within(lattice: Lattice, row: int, col: int, rows: int, cols: int) -> int:
-    """How many tiles (a tile met again after a turn counts twice) reach a window."""
-    reached = 0
-    for tile in lattice.tiles:
-        if tile.row < row + rows and row < tile.row + tile.raster.rows:
-            for turn in _turns(lattice, tile, col, cols):
-                left = tile.col + turn
-                reached += left < col + cols and col < left + tile.raster.cols
-    return reached
-
-
-def _turns(lattice: Lattice, tile: Tile, col: int, cols: int) -> range:
-    """Shifts by whole turns [columns] that may bring a tile into a window."""
-    if lattice.turn_cols is None:
-        return range(1)
-    turn = lattice.turn_cols
-    first = -((tile.col + tile.raster.cols - 1 - col) // turn)
-    last = (col + cols - 1 - tile.col) // turn
-    return range(first * turn, last * turn + 1, turn)

@@ -4,10 +4,11 @@ from typing import Final, NamedTuple
 
 import numpy as np
 
-from profiler.earth.geodesic import distances_m
+from profiler.earth.geodesic import distances_m, within_half_turn
 from profiler.model import FloatArray, Point
 from profiler.terrain.dem import Terrain
-from profiler.terrain.lattice import Lattice, PostReader
+from profiler.terrain.lattice import Lattice
+from profiler.terrain.windows import PostReader
 
 #: Radius of the ring around a station, at least [m] and in cells [1]; our choice: a
 #: clump of trees or a roof is seldom wider, and a clearing seldom further.
@@ -15,8 +16,6 @@ RING_M: Final = 60.0
 RING_CELLS: Final = 2.5
 #: Fewest posts that tell a slope from a clump [1]; our choice: a plane takes three.
 RING_POSTS: Final = 6
-#: Half a turn [deg].
-HALF_TURN_DEG: Final = 180.0
 
 
 class NearPosts(NamedTuple):
@@ -140,8 +139,7 @@ def rise_over_ring(terrain: Terrain, point: Point, ground_m: float) -> float | N
         return None
     height = near.height_m[known]
     north = near.lat_deg[known] - point.lat_deg
-    east = near.lon_deg[known] - point.lon_deg
-    east = (east + HALF_TURN_DEG) % (2.0 * HALF_TURN_DEG) - HALF_TURN_DEG
+    east = within_half_turn(near.lon_deg[known] - point.lon_deg)
     sides = np.column_stack([np.ones_like(height), east, north])
     # a column of one size keeps the fit sound wherever on earth it is
     sides /= np.maximum(np.abs(sides).max(axis=0), np.finfo(float).tiny)
@@ -152,15 +150,11 @@ def rise_over_ring(terrain: Terrain, point: Point, ground_m: float) -> float | N
 
 def _post_of(lattice: Lattice, point: Point) -> tuple[float, float] | None:
     """Column and row of a point on a lattice, None outside its outline."""
-    x, y = lattice.crs.to_crs(np.array([point.lat_deg]), np.array([point.lon_deg]))
-    cols, rows = lattice.to_posts(x, y)
+    cols, rows = lattice.posts_at(np.array([point.lat_deg]), np.array([point.lon_deg]))
     col, row = float(cols[0]), float(rows[0])
     if not (np.isfinite(col) and np.isfinite(row)):
         return None
     first, last = lattice.cols[0], lattice.cols[1] - 1
-    if lattice.crs.is_geographic:
-        turn = lattice.crs.turn / abs(lattice.affine.dx_col)
-        col += turn * np.round(((first + last) / 2.0 - col) / turn)
     inside = first - 0.5 <= col <= last + 0.5
     inside &= lattice.rows[0] - 0.5 <= row <= lattice.rows[1] - 0.5
     return (col, row) if inside else None

@@ -62,14 +62,7 @@ def _from_lattice(
     lattice: Lattice, lat_deg: FloatArray, lon_deg: FloatArray
 ) -> FloatArray:
     """Heights at (k,) places from one grid, NaN outside it."""
-    x, y = lattice.crs.to_crs(lat_deg, lon_deg)
-    with np.errstate(invalid="ignore"):
-        # where the projection has no value coordinates are infinite
-        col, row = lattice.to_posts(x, y)
-    if lattice.crs.is_geographic:
-        turn = lattice.crs.turn / abs(lattice.affine.dx_col)
-        middle = (lattice.cols[0] + lattice.cols[1] - 1) / 2.0
-        col = col + turn * np.round((middle - col) / turn)
+    col, row = lattice.posts_at(lat_deg, lon_deg)
     found = np.full(np.shape(lat_deg), np.nan)
     inside = _inside(lattice.rows, row) & _inside(lattice.cols, col)
     if not inside.any():

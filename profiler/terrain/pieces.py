@@ -11,18 +11,17 @@ import numpy as np
 
 from profiler.model.arrays import BoolArray, FloatArray, IntArray
 from profiler.model.terrain import Interpolation
-from profiler.terrain.lattice import Lattice, PostReader, Window, tiles_within
+from profiler.terrain.lattice import Lattice
 from profiler.terrain.pixel_path import (
     ON_POST_CELLS,
     PATH_ERROR_CELLS,
     PixelPath,
 )
 from profiler.terrain.seams import SEAM_POSTS, note_seams
+from profiler.terrain.windows import PostReader, Window, runs_of_cells, tiles_within
 
-#: Pieces read together [1] and the most posts in one window [1]; our choice: a
-#: window of a straight run of 256 cells stays below half a megabyte.
+#: Pieces read together [1]; our choice.
 CHUNK_PIECES: Final = 256
-CHUNK_POSTS: Final = 160_000
 
 
 class Pieces(NamedTuple):
@@ -160,7 +159,8 @@ def read_pieces(
     height = np.full((layout.start_m.size, 3), np.nan)
     source = np.full(layout.start_m.size, -1, dtype=np.int64)
     todo = np.flatnonzero(layout.inside)
-    for chunk in _chunks(layout, todo):
+    for run in runs_of_cells(layout.row[todo], layout.col[todo], most=CHUNK_PIECES):
+        chunk = todo[run]
         row, col = layout.row[chunk], layout.col[chunk]
         top, left = int(row.min()), int(col.min())
         rows, cols = int(row.max()) - top + 2, int(col.max()) - left + 2
@@ -193,23 +193,6 @@ def _window_with_seams(
     return Window(wide.height_m[part], wide.owner[part])
 
 
-def _chunks(layout: Layout, todo: IntArray) -> list[IntArray]:
-    """Runs of pieces whose window stays small, in path order."""
-    chunks, at = [], 0
-    while at < todo.size:
-        size = min(CHUNK_PIECES, todo.size - at)
-        while size > 1 and _window_posts(layout, todo[at : at + size]) > CHUNK_POSTS:
-            size //= 2
-        chunks.append(todo[at : at + size])
-        at += size
-    return chunks
-
-
-def _window_posts(layout: Layout, chunk: IntArray) -> int:
-    row, col = layout.row[chunk], layout.col[chunk]
-    return int((np.ptp(row) + 2) * (np.ptp(col) + 2))
-
-
 def _heights(
     window: Window,
     row: IntArray,
@@ -234,16 +217,7 @@ def _heights(
     near_row = row + (parts[0][:, 1] > 0.5)
     near_col = col + (parts[1][:, 1] > 0.5)
     source = owner[near_row, near_col]
-    part_row, part_col = parts[0][:, :, None], parts[1][:, :, None]
-    weight = np.concatenate(
-        [
-            (1.0 - part_row) * (1.0 - part_col),
-            (1.0 - part_row) * part_col,
-            part_row * (1.0 - part_col),
-            part_row * part_col,
-        ],
-        axis=2,
-    )
+    weight = _weights(*parts)
     used = np.any(weight > 0.0, axis=1)
     known = np.all(np.isfinite(corners) | ~used, axis=1)
     safe = np.where(used, corners, 0.0)
@@ -253,3 +227,17 @@ def _heights(
     else:
         height = np.einsum("ksc,kc->ks", weight, np.where(known[:, None], safe, 0.0))
     return np.where(known[:, None], height, np.nan), source
+
+
+def _weights(part_row: FloatArray, part_col: FloatArray) -> FloatArray:
+    """(k, 3, 4) bilinear weight of a cell's four posts at three places of a piece."""
+    row, col = part_row[:, :, None], part_col[:, :, None]
+    return np.concatenate(
+        [
+            (1.0 - row) * (1.0 - col),
+            (1.0 - row) * col,
+            row * (1.0 - col),
+            row * col,
+        ],
+        axis=2,
+    )

@@ -70,7 +70,7 @@ class PixelPath:
             unit = self._unit(int(k), dist_m[here])
             col[here] = chebyshev.chebval(unit, self.col[k])
             row[here] = chebyshev.chebval(unit, self.row[k])
-        return _snapped(col), _snapped(row)
+        return snapped(col), snapped(row)
 
     def _unit(self, k: int, dist_m: FloatArray) -> FloatArray:
         a, b = self.knot_m[k], self.knot_m[k + 1]
@@ -102,7 +102,8 @@ class PixelPath:
         return np.concatenate(found)
 
 
-def _snapped(value: FloatArray) -> FloatArray:
+def snapped(value: FloatArray) -> FloatArray:
+    """Coordinates [cells], whole where they lie on a post but for rounding."""
     whole = np.round(value)
     return np.where(np.abs(value - whole) <= ON_POST_CELLS, whole, value)
 

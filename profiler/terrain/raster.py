@@ -20,10 +20,11 @@ from rasterio.enums import ColorInterp, MaskFlags
 from rasterio.errors import NotGeoreferencedWarning, RasterioError
 from rasterio.windows import Window
 
+from profiler.constants import HEIGHT_UNIT_M
 from profiler.earth.projection import Projector, crs_from_user, projector
 from profiler.errors import DemError
 from profiler.model.arrays import BoolArray, FloatArray
-from profiler.terrain.units import UNIT_M, unit_from_text
+from profiler.terrain.units import unit_from_text
 
 #: Values that stand for "no data" without saying so (common practice) [raw].
 SENTINELS: Final = (-32768.0, -32767.0, -9999.0, -99999.0, -999999.0)
@@ -51,6 +52,16 @@ class Affine(NamedTuple):
         return (
             self.x0 + self.dx_col * col + self.dx_row * row,
             self.y0 + self.dy_col * col + self.dy_row * row,
+        )
+
+    def posts(self, x: FloatArray, y: FloatArray) -> tuple[FloatArray, FloatArray]:
+        """Column and row coordinates, whole numbers at posts, of CRS coordinates."""
+        det = self.dx_col * self.dy_row - self.dx_row * self.dy_col
+        dx = np.asarray(x) - self.x0
+        dy = np.asarray(y) - self.y0
+        return (
+            (dx * self.dy_row - dy * self.dx_row) / det,
+            (dy * self.dx_col - dx * self.dy_col) / det,
         )
 
 
@@ -367,7 +378,7 @@ def to_metres(raw: RawArray, coded: Coded, hidden: BoolArray | None) -> Posts:
         for value in SENTINELS:
             filler |= height == value
         filler &= ~void
-        height = (height * coded.scale + coded.offset) * UNIT_M[coded.unit]
+        height = (height * coded.scale + coded.offset) * HEIGHT_UNIT_M[coded.unit]
     height[void | filler] = np.nan
     return Posts(height, filler)
 

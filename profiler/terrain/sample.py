@@ -6,7 +6,7 @@ from typing import Final
 
 import numpy as np
 
-from profiler.constants import HASH_BELOW_BYTES, SEAM_STEP_M
+from profiler.constants import HASH_BELOW_BYTES, M_PER_KM, SEAM_STEP_M
 from profiler.earth.geodesic import points_at
 from profiler.model.arrays import BoolArray, FloatArray, IntArray
 from profiler.model.note import Note
@@ -17,9 +17,10 @@ from profiler.model.terrain import (
     SourceFile,
 )
 from profiler.terrain.dem import Terrain
-from profiler.terrain.lattice import Lattice, PostReader
+from profiler.terrain.lattice import Lattice
 from profiler.terrain.pieces import Layout, Pieces, lay_out, read_pieces
 from profiler.terrain.pixel_path import PixelPath, fit_pixel_path
+from profiler.terrain.windows import PostReader
 
 #: Ground that differs by less at a shared crossing is continuous [m]; rounding only.
 CONTINUOUS_M: Final = 1e-6
@@ -171,7 +172,7 @@ def _turns_to(lattice: Lattice, path: GeodesicPath) -> float:
     if not lattice.crs.is_geographic:
         return 0.0
     mid = (lattice.cols[0] + lattice.cols[1]) / 2.0
-    turn = lattice.crs.turn / abs(lattice.affine.dx_col)
+    turn = lattice.columns_in_turn
     col, _ = _to_posts(lattice, path, np.array([path.length_m / 2.0]))
     return turn * round((mid - float(col[0])) / turn)
 
@@ -337,7 +338,7 @@ def _lattice_steps(
     )
     text = (
         f"The ground steps by {abs(steps[at]):.1f} m at "
-        f"{pieces.end_m[at] / 1000.0:.2f} km, where {names} meet. Check that both use "
-        "the same height datum and unit."
+        f"{pieces.end_m[at] / M_PER_KM:.2f} km, where {names} meet. Check that both "
+        "use the same height datum and unit."
     )
     return (Note(code="seam-step", text=text),)

@@ -8,15 +8,13 @@ import numpy as np
 import rasterio
 from rasterio.windows import Window
 
-from profiler.constants import VOID_BELOW_M
+from profiler.constants import LOWEST_GROUND_M, VOID_BELOW_M
 from profiler.model.arrays import BoolArray, FloatArray
 from profiler.terrain.raster import Coded, RawArray, read_raw, to_metres
 
 #: Posts held at once, unless one block of the file is larger [1]; our choice: with
 #: their copies about 50 MB.
 SCAN_POSTS: Final = 2**20
-#: No ground lies lower [m]; the shore of the Dead Sea is at −430 m (common practice).
-LOWEST_GROUND_M: Final = -500.0
 
 Progress = Callable[[int, int], None]
 

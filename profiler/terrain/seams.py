@@ -6,7 +6,7 @@ import numpy as np
 
 from profiler.constants import SEAM_STEP_M
 from profiler.model.arrays import FloatArray, IntArray
-from profiler.terrain.lattice import Window
+from profiler.terrain.windows import Window
 
 #: Fewest neighbouring pairs of posts that make a median worth stating [1]; our choice.
 FEWEST_PAIRS: Final = 8

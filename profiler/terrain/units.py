@@ -1,12 +1,8 @@
-"""Units of heights: what a band or CRS may say, and how many metres each is."""
+"""Units of heights: what a band or a CRS may call each of them."""
 
 from typing import Final
 
-from profiler.constants import FOOT_M, US_SURVEY_FOOT_M
 from profiler.errors import InputError
-
-#: Metres in one unit of height [m], by the name used in options and records.
-UNIT_M: Final = {"m": 1.0, "ft": FOOT_M, "us-ft": US_SURVEY_FOOT_M}
 
 #: Spellings met in band units and CRS axes (common practice), lower case.
 _SPELLINGS: Final = {

@@ -9,7 +9,8 @@ from matplotlib.axes import Axes
 from matplotlib.figure import Figure
 from matplotlib.lines import Line2D
 
-from profiler.earth import Projector, plane_around, points_at
+from profiler.constants import TURN_DEG
+from profiler.earth import Projector, plane_around, points_at, within_half_turn
 from profiler.model import BoolArray, FloatArray, GeodesicPath
 from profiler.model.arrays import frozen
 from profiler.output.figures import page
@@ -32,9 +33,6 @@ NODES: Final = 17
 EVEN_BELOW_DEG: Final = 80.0
 #: Points along the path on the map [1].
 PATH_POINTS: Final = 65
-#: A turn and half of it [deg].
-TURN_DEG: Final = 360.0
-HALF_TURN_DEG: Final = 180.0
 #: The lamp: bearing and height above the horizon [deg]; common practice.
 LAMP_AZIMUTH_DEG: Final = 315.0
 LAMP_HEIGHT_DEG: Final = 45.0
@@ -98,7 +96,7 @@ def ground_map(terrain: Terrain, path: GeodesicPath) -> GroundMap:
     """
     lat, lon = points_at(path, np.linspace(0.0, path.length_m, PATH_POINTS))
     middle = PATH_POINTS // 2
-    plane = plane_around(float(lat[middle]), _turned(lon[middle]))
+    plane = plane_around(float(lat[middle]), within_half_turn(float(lon[middle])))
     x, y = plane.to_crs(lat, lon)
     finest = finest_at(terrain, path.start)
     post_m = 0.0 if finest is None else finest.size_m
@@ -147,11 +145,6 @@ def _weights(node: FloatArray, axis: FloatArray) -> FloatArray:
     """(len(axis), len(node)) shares of the two nodes beside each place."""
     at = np.interp(axis, node, np.arange(node.size, dtype=np.float64))
     return np.maximum(1.0 - np.abs(at[:, None] - np.arange(node.size)), 0.0)
-
-
-def _turned(lon_deg: float) -> float:
-    """A longitude [deg] within a half turn of Greenwich."""
-    return float((lon_deg + HALF_TURN_DEG) % TURN_DEG - HALF_TURN_DEG)
 
 
 def _frame(
