@@ -8,7 +8,7 @@ import rasterio
 from pyproj import Transformer
 from scipy.ndimage import map_coordinates
 
-from profiler.terrain import at_points, open_terrain
+from profiler.terrain import at_points, open_terrain, windows
 from profiler.terrain.at_points import ground_at
 from tests import terrain
 from tests.looking import opened

@@ -5,7 +5,8 @@ from pathlib import Path
 import numpy as np
 import pytest
 
-from profiler.cli.cover_options import cover_from
+from profiler.cli.cover_options import check_growth, cover_from
+from profiler.cli.question import cover_in
 from profiler.errors import InputError
 from tests import terrain
 from tests.terrain import CENTRED_CRS
@@ -17,7 +18,7 @@ def test_no_option_is_no_cover() -> None:
 
 
 def test_a_canopy_grows_with_the_years() -> None:
-    along = cover_from(canopy_m=15.0, growth_m=0.4, years=10)
+    along = cover_in(cover_from(canopy_m=15.0), growth_m=0.4, year=10)
     assert along is not None
     (span,) = along(eastward()).spans
     assert (span.name, span.height_m) == ("canopy", 19.0)
@@ -42,13 +43,6 @@ def test_files_of_outlines_and_of_cells_are_told_apart_by_their_endings(
 @pytest.mark.parametrize(
     ("options", "part"),
     [
-        ({"canopy_m": 15.0, "growth_m": 0.4}, "--growth alone says nothing"),
-        ({"canopy_m": 15.0, "years": 9.0}, "Add --growth 0.4m"),
-        ({"growth_m": 0.4, "years": 9.0}, "needs trees to grow"),
-        ({"canopy_m": 15.0, "growth_m": 15.0, "years": 9.0}, "within 0 to 5 m"),
-        ({"canopy_m": 15.0, "growth_m": -0.1, "years": 9.0}, "within 0 to 5 m"),
-        ({"canopy_m": 15.0, "growth_m": 0.4, "years": 2027.0}, "within 0 to 200"),
-        ({"canopy_m": 15.0, "growth_m": 0.4, "years": float("nan")}, "0 to 200"),
         ({"canopy_m": -1.0}, "above 0"),
         ({"files": ["wood.gpkg"]}, "does not exist"),
         ({"files": ["wood.doc"]}, "does not exist"),
@@ -57,3 +51,26 @@ def test_files_of_outlines_and_of_cells_are_told_apart_by_their_endings(
 def test_what_cannot_be_is_refused(options: dict[str, float], part: str) -> None:
     with pytest.raises(InputError, match=part):
         cover_from(**options)  # type: ignore[arg-type]
+
+
+@pytest.mark.parametrize(
+    ("growth_m", "years", "part"),
+    [
+        (0.4, None, "--growth alone says nothing"),
+        (None, 9.0, "Add --growth 0.4m"),
+        (15.0, 9.0, "within 0 to 5 m"),
+        (-0.1, 9.0, "within 0 to 5 m"),
+        (0.4, 2027.0, "within 0 to 200"),
+        (0.4, float("nan"), "0 to 200"),
+    ],
+)
+def test_growth_that_cannot_be_is_refused(
+    growth_m: float | None, years: float | None, part: str
+) -> None:
+    with pytest.raises(InputError, match=part):
+        check_growth(growth_m, years, has_cover=True)
+
+
+def test_growth_without_trees_is_refused() -> None:
+    with pytest.raises(InputError, match="needs trees to grow"):
+        check_growth(0.4, 9.0, has_cover=False)

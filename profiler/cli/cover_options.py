@@ -3,6 +3,7 @@
 from collections.abc import Sequence
 from pathlib import Path
 
+from profiler.cli.options import MOST_YEARS
 from profiler.errors import InputError
 from profiler.model import Note
 from profiler.shapes import CoverShape, read_cover_file
@@ -13,16 +14,10 @@ from profiler.terrain.dem import SUFFIXES
 #: The most that any tree grows in a year [m]; common knowledge, from memory, with
 #: room; more is a height written in the wrong place.
 MOST_GROWTH_M = 5.0
-#: The most years that are looked ahead [1]; our choice.
-MOST_YEARS = 200
 
 
 def cover_from(
-    *,
-    canopy_m: float | None = None,
-    files: Sequence[str] = (),
-    growth_m: float | None = None,
-    years: float | None = None,
+    *, canopy_m: float | None = None, files: Sequence[str] = ()
 ) -> CoverAlong | None:
     """The cover that the options state; None without any.
 
@@ -33,8 +28,6 @@ def cover_from(
     files : sequence of str
         Of ``--cover``: outlines and points, or a raster of heights above ground, by
         the ending of the name.
-    growth_m, years : float or None [m] and [year]
-        Of ``--growth`` and ``--years``; both or neither.
 
     Returns
     -------
@@ -44,14 +37,11 @@ def cover_from(
     Raises
     ------
     InputError
-        If a file cannot be used, growth and years are not given together, or one
-        cannot be.
+        If a file or the height cannot be used.
     DemError
         If a raster cannot be used.
     """
-    has_cover = canopy_m is not None or bool(files)
-    check_growth(growth_m, years, has_cover=has_cover)
-    if not has_cover:
+    if canopy_m is None and not files:
         return None
     shapes: list[CoverShape] = []
     rasters: list[Terrain] = []
@@ -67,8 +57,6 @@ def cover_from(
         canopy_m=canopy_m,
         shapes=tuple(shapes),
         rasters=tuple(rasters),
-        metres_per_year=growth_m or 0.0,
-        years=years or 0.0,
         notes=tuple(notes),
     )
 
@@ -77,6 +65,13 @@ def check_growth(
     growth_m: float | None, years: float | None, *, has_cover: bool
 ) -> None:
     """Refuse growth without years, years without growth, and either without trees.
+
+    Parameters
+    ----------
+    growth_m, years : float or None [m] and [year]
+        Of ``--growth`` and ``--years``.
+    has_cover : bool
+        Whether there are trees to grow.
 
     Raises
     ------

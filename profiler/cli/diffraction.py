@@ -11,11 +11,11 @@ from profiler.cli.options import (
     question_options,
     stacked,
 )
-from profiler.cli.profile import path_answer, wrote
+from profiler.cli.profile import path_answer, print_answer
 from profiler.cli.question import air_from, check_heights, check_radio_heights
 from profiler.cli.sections import SectionCommand
 from profiler.cli.types import FREQUENCY, NUMBER
-from profiler.output.files import write_text
+from profiler.output.record import json_text
 
 EXAMPLES: Final = {
     "Question": "--from Skarvel --from-height 20m --to Quillet --to-height 30m",
@@ -70,7 +70,7 @@ def diffraction_command(**options: Any) -> None:
 
     No link budget, rain or multipath statistics: geometry and diffraction only.
     """
-    from profiler.output.loss import loss_record, loss_text, loss_words
+    from profiler.output.loss import loss_record, loss_words
     from profiler.radio.losses import path_losses
 
     check_heights(options)
@@ -85,9 +85,8 @@ def diffraction_command(**options: Any) -> None:
     for note in line.warnings:
         click.echo(f"Warning: {note.text}", err=True)
     values = loss_record(losses, line)
-    if options["json_file"] == "-":
-        click.echo(loss_text(values).encode(), nl=False)
-    else:
-        click.echo(loss_words(values), nl=False)
-    if options["json_file"] not in (None, "-"):
-        wrote(options["json_file"], lambda p: write_text(p, loss_text(values)))
+    print_answer(
+        options["json_file"],
+        record=lambda: json_text(values),
+        told=lambda: loss_words(values),
+    )

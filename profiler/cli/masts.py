@@ -11,13 +11,13 @@ from profiler.cli.options import (
     radio_options,
     stacked,
 )
-from profiler.cli.profile import path_answer, wrote
+from profiler.cli.profile import path_answer, print_answer, wrote
 from profiler.cli.question import Options, assumed_heights, check_heights, rule_from
 from profiler.cli.sections import SectionCommand
 from profiler.cli.types import HEIGHT, NUMBER
 from profiler.constants import KE_RADIO
 from profiler.model import Air, EndReport
-from profiler.output.files import write_text
+from profiler.output.record import json_text
 
 EXAMPLES: Final = {
     "Question": "--from Skarvel --to Quillet --sites sites.csv --to-height 30m",
@@ -113,7 +113,7 @@ def masts_command(**options: Any) -> None:
     A height given with --from-height or --to-height is kept, and the least one at the
     other end is named; equal heights, the cheapest pair and the whole trade-off always.
     """
-    from profiler.output.masts_record import masts_record, masts_text
+    from profiler.output.masts_record import masts_record
     from profiler.output.masts_words import masts_words
     from profiler.radio.assess import rule_warnings
     from profiler.radio.plan import antenna_heights
@@ -137,12 +137,11 @@ def masts_command(**options: Any) -> None:
     values = masts_record(plan, line, rule=made, frequency_hz=options["frequency"])
     for note in (*line.warnings, *rule_warnings(options["frequency"], made)):
         click.echo(f"Warning: {note.text}", err=True)
-    if options["json_file"] == "-":
-        click.echo(masts_text(values).encode(), nl=False)
-    else:
-        click.echo(masts_words(values, show_in=options["show_in"]), nl=False)
-    if options["json_file"] not in (None, "-"):
-        wrote(options["json_file"], lambda p: write_text(p, masts_text(values)))
+    print_answer(
+        options["json_file"],
+        record=lambda: json_text(values),
+        told=lambda: masts_words(values, show_in=options["show_in"]),
+    )
     if options["figure"] is not None:
         _draw(values, options)
 

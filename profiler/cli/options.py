@@ -1,13 +1,17 @@
 """Options that commands about one path share, in the sections of their help."""
 
 from collections.abc import Callable
-from typing import Any
+from typing import Any, Final
 
 import click
 
 from profiler.cli.sections import SectionOption
 from profiler.cli.types import CRITERION, FREQUENCY, HEIGHT, KE, KR, LENGTH, N_GRADIENT
-from profiler.constants import VOID_BELOW_M
+from profiler.constants import EYE_M, HEIGHT_UNIT_M, VOID_BELOW_M
+from profiler.model import DemKind, Interpolation
+
+#: The most years of growth that are looked ahead [1]; our choice.
+MOST_YEARS: Final = 200
 
 Decorator = Callable[[Callable[..., None]], Callable[..., None]]
 
@@ -66,7 +70,7 @@ def _end_options(role: str, who: str, default: str) -> list[Decorator]:
 
 question_options = stacked(
     [
-        *_end_options("from", "The eye", "1.7m"),
+        *_end_options("from", "The eye", f"{EYE_M:g}m"),
         *_end_options("to", "The target", "0, bare ground"),
         option(
             "Question",
@@ -96,14 +100,14 @@ ground_options = stacked(
         option(
             "Ground",
             "--dem-kind",
-            type=click.Choice(["bare", "surface"]),
+            type=click.Choice([DemKind.BARE.value, DemKind.SURFACE.value]),
             help="What the heights show: bare ground, or tree tops and roofs too.  "
             "[default: not stated]",
         ),
         option(
             "Ground",
             "--dem-unit",
-            type=click.Choice(["m", "ft", "us-ft"]),
+            type=click.Choice(list(HEIGHT_UNIT_M)),
             help="Unit of the heights.  [default: as the file states, else m]",
         ),
         option(
@@ -115,8 +119,8 @@ ground_options = stacked(
         option(
             "Ground",
             "--interpolation",
-            type=click.Choice(["bilinear", "highest", "nearest"]),
-            default="bilinear",
+            type=click.Choice([way.value for way in Interpolation]),
+            default=Interpolation.BILINEAR.value,
             show_default=True,
             help="Ground between posts; highest, of the four around, is cautious.",
         ),
@@ -179,7 +183,7 @@ ground_options = stacked(
         option(
             "Ground",
             "--years",
-            type=click.IntRange(min=0, max=200),
+            type=click.IntRange(min=0, max=MOST_YEARS),
             metavar="N",
             help="Years of growth; the answer is for the last, and the first that "
             "fails is named.",

@@ -10,6 +10,7 @@ from profiler.earth import geodesic_path, points_at, within_half_turn
 from profiler.errors import InputError, OutsideDemError
 from profiler.model import GeodesicPath, Point, Station
 from profiler.output.numbers import box, latitude, longitude
+from profiler.sight.outside import fits_exchanged, has_ground
 from profiler.terrain import Terrain
 from profiler.terrain.near import is_inside
 
@@ -40,9 +41,9 @@ def check_ends(
         The message offers the exchanged numbers if those fit, says from where to
         where the path has no ground, or names the box that the files cover.
     """
-    inside = [_has_ground(terrain, station) for station in (eye, target)]
+    inside = [has_ground(terrain, station) for station in (eye, target)]
     for station, role, known in zip((eye, target), ("from", "to"), inside, strict=True):
-        if in_degrees and not known and _fits_exchanged(terrain, station.point):
+        if in_degrees and not known and fits_exchanged(terrain, station.point):
             raise OutsideDemError(_exchanged_text(terrain, station.point, role))
     if all(inside):
         return
@@ -59,24 +60,10 @@ def check_ends(
     raise OutsideDemError(msg)
 
 
-def _has_ground(terrain: Terrain, station: Station) -> bool:
-    if station.amsl_m is not None or station.surveyed_ground_m is not None:
-        return True
-    return is_inside(terrain, station.point)
-
-
 def _named(station: Station) -> str:
     point = station.point
     where = f"{latitude(point.lat_deg)} {longitude(point.lon_deg)}"
     return f"{station.name} ({where})" if station.name else where
-
-
-def _fits_exchanged(terrain: Terrain, point: Point) -> bool:
-    try:
-        other = Point(lat_deg=point.lon_deg, lon_deg=point.lat_deg)
-    except InputError:
-        return False
-    return is_inside(terrain, other)
 
 
 def _exchanged_text(terrain: Terrain, point: Point, role: str) -> str:

@@ -37,7 +37,7 @@ from profiler.model import Air, Verdict
 from profiler.output.answer import Answer, look, look_ahead
 from profiler.output.check_points import check_points_text, writer_for
 from profiler.output.exchange import geojson_text
-from profiler.output.files import write_text
+from profiler.output.files import FIGURE_SUFFIXES, write_text
 from profiler.output.record import record_text
 from profiler.output.words import words
 
@@ -156,7 +156,7 @@ def check_figure_name(name: str | None) -> None:
     InputError
         If it is none of .png, .svg, .pdf.
     """
-    if name is not None and Path(name).suffix.lower() not in (".png", ".svg", ".pdf"):
+    if name is not None and Path(name).suffix.lower() not in FIGURE_SUFFIXES:
         msg = f'"{name}" must end in .png, .svg or .pdf.'
         raise InputError(msg)
 
@@ -171,13 +171,11 @@ def tell(answer: Answer, options: Options) -> None:
     """Print the answer, write what was asked for, and name it on stderr."""
     for note in answer.warnings:
         click.echo(f"Warning: {note.text}", err=True)
-    if options["json_file"] == "-":
-        # bytes: the same as in a file, whatever the terminal's encoding
-        click.echo(record_text(answer).encode(), nl=False)
-    else:
-        click.echo(words_for(answer, options), nl=False)
-    if options["json_file"] not in (None, "-"):
-        wrote(options["json_file"], lambda p: write_text(p, record_text(answer)))
+    print_answer(
+        options["json_file"],
+        record=lambda: record_text(answer),
+        told=lambda: words_for(answer, options),
+    )
     if options["geojson"] is not None:
         wrote(options["geojson"], lambda p: write_text(p, geojson_text(answer)))
     if options["check_points"] is not None:
@@ -193,6 +191,27 @@ def tell(answer: Answer, options: Options) -> None:
         wrote(options["figure"], lambda p: save_figure(figure, p))
     elif options["json_file"] is None:
         click.echo(next_step(answer), err=True)
+
+
+def print_answer(
+    json_file: str | None, *, record: Callable[[], str], told: Callable[[], str]
+) -> None:
+    """Print the words, or the record alone; write the record where it was asked for.
+
+    Parameters
+    ----------
+    json_file : str or None
+        Of ``--json``; "-" prints the record instead of the words.
+    record, told : callable
+        Make the record's text and the words.
+    """
+    if json_file == "-":
+        # bytes: the same as in a file, whatever the terminal's encoding
+        click.echo(record().encode(), nl=False)
+    else:
+        click.echo(told(), nl=False)
+    if json_file not in (None, "-"):
+        wrote(json_file, lambda p: write_text(p, record()))
 
 
 def next_step(answer: Answer) -> str:

@@ -7,13 +7,11 @@ from profiler.cli.characters import LONGEST_TEXT, echo, number_from, one_alphabe
 from profiler.cli.quantities import parse_height, parse_ke
 from profiler.errors import InputError
 from profiler.radio.criteria import Criterion
+from profiler.radio.waves import HIGHEST_FREQUENCY_HZ, LOWEST_FREQUENCY_HZ
 
 #: Hertz in the units a frequency is written in.
 _FREQUENCY_UNITS: Final = {"hz": 1.0, "khz": 1e3, "mhz": 1e6, "ghz": 1e9}
 _NUMBER_THEN_UNIT: Final = re.compile(r"([+-]?[0-9.,]+) ?([a-z]*)", re.I)
-#: Lowest and highest frequency handled [Hz], as in `profiler.radio.waves`.
-_LOWEST_HZ: Final = 10e6
-_HIGHEST_HZ: Final = 300e9
 
 
 def parse_frequency(text: str) -> float:
@@ -48,7 +46,7 @@ def parse_frequency(text: str) -> float:
         msg = f"{number} what? {echo(parts[2])} is no unit: write {number}GHz."
         raise InputError(msg)
     frequency = value * _FREQUENCY_UNITS[unit]
-    if not _LOWEST_HZ <= frequency <= _HIGHEST_HZ:
+    if not LOWEST_FREQUENCY_HZ <= frequency <= HIGHEST_FREQUENCY_HZ:
         msg = f"{echo(text)} is outside 10 MHz to 300 GHz."
         raise InputError(msg)
     return frequency

@@ -143,24 +143,6 @@ class Projector:
             # with one shift only there is no choice to report
             return None
 
-    def is_ballpark_at(self, lat_deg: float, lon_deg: float) -> bool:
-        """Whether no datum shift to WGS84 is known at one place.
-
-        Parameters
-        ----------
-        lat_deg, lon_deg : float [deg]
-            WGS84 latitude and longitude.
-
-        Returns
-        -------
-        bool
-            True also where the known shifts hold only elsewhere.
-        """
-        if self.transformer is None or self.ballpark:
-            return self.ballpark
-        used = self._used_at(np.array([lat_deg]), np.array([lon_deg]))
-        return used is not None and _says_ballpark(used)
-
 
 @lru_cache(maxsize=KEPT_READY)
 def projector(crs_wkt: str) -> Projector:

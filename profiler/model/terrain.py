@@ -122,6 +122,22 @@ class PathProfile:
         object.__setattr__(self, "source", frozen_int(self.source))
 
     @property
+    def piece_samples(self) -> IntArray:
+        """(k, 3) indices of the samples at each piece's start, middle and end."""
+        samples: IntArray = self.piece_start[:, None] + np.arange(3)
+        return samples
+
+    @property
+    def piece_bounds_m(self) -> tuple[FloatArray, FloatArray]:
+        """(k,) distances at which each piece starts and ends."""
+        return self.dist_m[self.piece_start], self.dist_m[self.piece_start + 2]
+
+    @property
+    def coarsest_cell_m(self) -> float:
+        """Longest side of a cell of the files under the path [m]; 0 without files."""
+        return max((side for f in self.files for side in f.cell_m), default=0.0)
+
+    @property
     def top_m(self) -> FloatArray:
         """(n,) ground and cover together [m]; NaN where there is no ground."""
         top: FloatArray = self.ground_m + self.cover_m

@@ -54,8 +54,6 @@ __all__ = [
 
 #: Words beside the axes stand so far from the page's edge [in].
 AXIS_WORDS_IN: Final = 0.15
-#: Distance between two lines of small letters [in].
-LINE_IN: Final = 0.15
 #: Words under the distances stand so far below them [in].
 DISTANCE_WORDS_IN: Final = 0.34
 
@@ -140,7 +138,7 @@ def _axis_words(figure: Figure, course: Course, scale: Scale) -> None:
         for k, text in enumerate(words):
             page.write(
                 figure,
-                AXIS_WORDS_IN + LINE_IN * k,
+                AXIS_WORDS_IN + page.SMALL_LINE_IN * k,
                 area.bottom + area.height / 2.0,
                 text,
                 rotation=QUARTER_TURN_DEG,
@@ -186,7 +184,7 @@ def _void_words(figure: Figure, course: Course, scale: Scale) -> None:
         artist = page.write(
             figure,
             wanted,
-            area.top - LINE_IN * (k + 1) - page.BASELINE_IN / 2.0,
+            area.top - page.SMALL_LINE_IN * (k + 1) - page.BASELINE_IN / 2.0,
             text,
             size=page.SMALL,
             ha="center",
@@ -205,6 +203,6 @@ def _target(figure: Figure, course: Course, scale: Scale) -> None:
     page.write(figure, words.left, head, title, bold=True)
     draw_target(page.area_axes(figure, page.TARGET_AREA, "target"), course, scale)
     for k, text in enumerate(target_lines(course, scale)):
-        y = words.top - LINE_IN * (k + 1)
+        y = words.top - page.SMALL_LINE_IN * (k + 1)
         artist = page.write(figure, words.left, y, text, size=page.SMALL)
         page.fit(figure, artist, words.width, least_pt=page.SMALL)

@@ -9,6 +9,8 @@ from typing import Final
 
 from profiler.errors import InputError
 
+#: Endings of a figure's name.
+FIGURE_SUFFIXES: Final = (".png", ".svg", ".pdf")
 #: How much of a file's name its temporary twin repeats [characters]; our choice.
 STEM_CHARACTERS: Final = 40
 #: Rights of a new file before the user's mask: all may read and write [mode bits].

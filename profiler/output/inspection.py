@@ -1,6 +1,5 @@
 """What an elevation file is: the sheet a planner reads, and its JSON record."""
 
-import json
 import math
 from collections.abc import Iterable, Iterator
 from typing import Any, Final
@@ -9,10 +8,13 @@ from profiler.constants import TURN_DEG
 from profiler.model.note import Note
 from profiler.model.terrain import DemKind
 from profiler.output.numbers import count, latitude, longitude, place, ratio
+from profiler.output.record import json_text
 from profiler.output.rounding import deg, metres
 from profiler.output.rounding import ratio as share
 from profiler.terrain.inspect import FileReport, Group, Spot
 
+#: Name and version of the record of inspected files.
+INSPECT_SCHEMA: Final = "overbrow/inspect/1"
 #: Width of the lead words [characters]; the longest is "declare".
 LEAD: Final = 10
 #: Bytes in the units of file sizes [bytes], as planners count them (common practice).
@@ -274,10 +276,10 @@ def inspections_json(reports: Iterable[FileReport]) -> str:
         In the order wanted.
     """
     record = {
-        "schema": "overbrow/inspect/1",
+        "schema": INSPECT_SCHEMA,
         "files": [inspection_record(r) for r in reports],
     }
-    return json.dumps(record, indent=1, allow_nan=False, ensure_ascii=False) + "\n"
+    return json_text(record)
 
 
 def notes_text(report: FileReport) -> Iterator[str]:

@@ -1,15 +1,13 @@
 """Diffraction loss of one path: its record and its words."""
 
-import json
 import textwrap
 from typing import Any, Final
 
-from profiler.constants import VERSION
 from profiler.model import SightLine
 from profiler.output.naming import names_of
 from profiler.output.numbers import Show, place, ratio
 from profiler.output.radio_words import frequency_text
-from profiler.output.record import record
+from profiler.output.record import SOFTWARE, note_record, record
 from profiler.output.rounding import db, deg, metres
 from profiler.output.rounding import ratio as six
 from profiler.output.words import LEAD, WIDTH, air_and_ground
@@ -43,7 +41,6 @@ def loss_record(losses: PathLosses, line: SightLine) -> Json:
     """
     values, found = record(line), losses.obstruction
     total = None if losses.headline is None else db(losses.headline.total_db)
-    caution = {"code": RADIO_CAUTION.code, "text": RADIO_CAUTION.text}
     return {
         "schema": LOSS_SCHEMA,
         "frequency_hz": losses.frequency_hz,
@@ -69,15 +66,10 @@ def loss_record(losses: PathLosses, line: SightLine) -> Json:
             for key in ("verdict", "margin_m", "decisive", "path", "earth", "terrain")
         },
         **{key: values[key] for key in ("cover", "from", "to", "settings")},
-        "cautions": [*values["cautions"], caution],
+        "cautions": [*values["cautions"], note_record(RADIO_CAUTION)],
         "warnings": values["warnings"],
-        "software": {"name": "overbrow", "version": VERSION},
+        "software": SOFTWARE,
     }
-
-
-def loss_text(values: Json) -> str:
-    """The record of losses as JSON text, one final newline."""
-    return json.dumps(values, indent=1, ensure_ascii=False, allow_nan=False) + "\n"
 
 
 def _suggested(choice: MethodChoice | None) -> Json | None:

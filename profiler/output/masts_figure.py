@@ -10,9 +10,15 @@ from matplotlib.figure import Figure
 from profiler.constants import FOOT_M, QUARTER_TURN_DEG
 from profiler.model import FloatArray
 from profiler.output.figures import page
-from profiler.output.figures.foot import LINE_MOST, WHO, draw_foot, side_text
+from profiler.output.figures.foot import (
+    HASH_SHOWN,
+    LINE_MOST,
+    WHO,
+    draw_foot,
+    side_text,
+)
 from profiler.output.figures.marks import spread
-from profiler.output.figures.masts_key import draw_masts_key
+from profiler.output.figures.masts_key import HAIR, draw_masts_key
 from profiler.output.figures.masts_plan import Pair, looks_of, pairs_of, runs_of
 from profiler.output.figures.scale import nice_ticks, tick_texts
 from profiler.output.figures.tables import NAME_MOST, draw_head, short
@@ -43,8 +49,6 @@ LETTER_GAP: Final = 15.0
 HALF_ROOT: Final = 0.5**0.5
 #: Characters of a line of cautions [1]; the page holds about 190.
 CAUTION_MOST: Final = 185
-#: Width of thin lines [pt].
-HAIR: Final = 0.8
 
 Json = dict[str, Any]
 Spots = list[tuple[float, float]]
@@ -247,7 +251,11 @@ def _marked(figure: Figure, ax: Axes, frame: Frame) -> None:
     ax.axvline(at, label="marked from", zorder=page.Z_GROUND, **look)
     ax.axhline(at, label="marked from", zorder=page.Z_GROUND, **look)
     share = at / frame.top
-    text = "200 ft" if frame.show.unit == "ft" else "60.96 m"
+    text = (
+        f"{MARKED_FROM_M / FOOT_M:.0f} ft"
+        if frame.show.unit == "ft"
+        else f"{MARKED_FROM_M:.2f} m"
+    )
     x, y = AREA.left + share * AREA.width, AREA.bottom + share * AREA.height
     up = AREA.top + page.BASELINE_IN
     page.write(figure, x, up, text, size=page.SMALL, ha="center")
@@ -261,7 +269,7 @@ def _quiet(values: Json) -> list[str]:
     ground = "no file gives ground"
     if files:
         more = f" and {len(files) - 1} more" if len(files) > 1 else ""
-        digest = f" {files[0]['sha256'][:8]}" if files[0]["sha256"] else ""
+        digest = f" {files[0]['sha256'][:HASH_SHOWN]}" if files[0]["sha256"] else ""
         posts = " x ".join(side_text(side) for side in files[0]["cell_m"])
         ground = f"{files[0]['name']}{digest}{more}, posts {posts} m"
     way = values["terrain"]["interpolation"]

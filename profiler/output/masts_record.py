@@ -1,12 +1,10 @@
 """The masts' record: antenna heights that meet a rule, as JSON."""
 
-import json
 from typing import Any, Final
 
-from profiler.constants import VERSION
 from profiler.model import SightLine
-from profiler.output.radio_record import criterion_record, note_record, rule_record
-from profiler.output.record import record
+from profiler.output.radio_record import criterion_record, rule_record
+from profiler.output.record import SOFTWARE, note_record, record
 from profiler.output.rounding import metres, metres_up, ratio
 from profiler.radio.answer import RADIO_CAUTION
 from profiler.radio.assess import rule_warnings
@@ -80,13 +78,8 @@ def masts_record(
             *path["warnings"],
             *(note_record(n) for n in rule_warnings(frequency_hz, rule)),
         ],
-        "software": {"name": "overbrow", "version": VERSION},
+        "software": SOFTWARE,
     }
-
-
-def masts_text(values: Json) -> str:
-    """The masts' record as JSON text, one final newline."""
-    return json.dumps(values, indent=1, ensure_ascii=False, allow_nan=False) + "\n"
 
 
 def _end(pair: MastPair | None, name: str) -> float | None:

@@ -2,13 +2,15 @@
 
 from typing import Any, Final
 
+from profiler.constants import FOOT_M
 from profiler.output.naming import capital, names_of
 from profiler.output.numbers import DOWN, UP, Show, ratio
 from profiler.output.radio_words import criterion_text, frequency_text
+from profiler.output.words import LEAD
 
 #: From this height on marking, lighting and registration rules may apply [m]; 200 ft,
 #: 47 CFR 17.7.
-MARKED_FROM_M: Final = 60.96
+MARKED_FROM_M: Final = 200.0 * FOOT_M
 MASTS_CAUTION: Final = (
     "Above 60.96 m (200 ft) and near airfields marking, lighting and registration "
     "rules may apply; structure, climbing and RF exposure are for licensed practice "
@@ -16,8 +18,6 @@ MASTS_CAUTION: Final = (
 )
 #: Points of the trade-off told in words [1]; all are in the record.
 TOLD: Final = 6
-#: Width of the lead words [characters].
-LEAD: Final = 13
 
 Json = dict[str, Any]
 

@@ -2,7 +2,6 @@
 
 from typing import Any
 
-from profiler.model import Note
 from profiler.output.naming import storable
 from profiler.output.rounding import db, deg, metres, ratio
 from profiler.radio.answer import RadioAnswer
@@ -39,11 +38,6 @@ def radio_record(radio: RadioAnswer) -> Json:
         "side": None if radio.side is None else _side(radio.side),
         **_sheet(radio.sheet),
     }
-
-
-def note_record(note: Note) -> Json:
-    """A warning or caution as the record writes it."""
-    return {"code": note.code, "text": note.text}
 
 
 def criterion_record(criterion: Criterion) -> Json:

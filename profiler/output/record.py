@@ -6,7 +6,6 @@ Metres carry 3 decimals, degrees 9, ratios 6; the same inputs give the same byte
 
 import hashlib
 import json
-import math
 from typing import Any, Final
 
 import numpy as np
@@ -22,12 +21,14 @@ from profiler.model import (
     VoidStretch,
 )
 from profiler.output.naming import storable
-from profiler.output.rounding import M_DECIMALS, deg, metres, ratio
+from profiler.output.rounding import deg, metres, metres_down, ratio
 from profiler.output.standing import cover_rows
 from profiler.output.told import growth_of, radio_of
 
 #: Name and version of the record's form.
 SCHEMA: Final = "overbrow/profile/1"
+#: Who wrote a record.
+SOFTWARE: Final = {"name": "overbrow", "version": VERSION}
 #: Significant digits of a curvature [1/m].
 KAPPA_DIGITS: Final = 10
 
@@ -85,25 +86,33 @@ def record(line: SightLine) -> Json:
         },
         **_radio(line),
         **_growth(line),
-        "cautions": [_note(n) for n in line.cautions],
-        "warnings": [_note(n) for n in line.warnings],
-        "software": {"name": "overbrow", "version": VERSION},
+        "cautions": [note_record(n) for n in line.cautions],
+        "warnings": [note_record(n) for n in line.warnings],
+        "software": SOFTWARE,
     }
 
 
 def record_text(line: SightLine) -> str:
     """The record as JSON text, one final newline."""
-    values = record(line)
+    return json_text(record(line))
+
+
+def json_text(values: Json) -> str:
+    """Any record of the house as JSON text, one final newline.
+
+    Parameters
+    ----------
+    values : dict
+        Plain values; NaN and infinity are refused, which no record holds.
+    """
     return json.dumps(values, indent=1, ensure_ascii=False, allow_nan=False) + "\n"
 
 
 def _void_length(line: SightLine) -> float:
     """Length of path without ground [m]."""
-    first = line.profile.piece_start
-    void = np.isnan(line.profile.ground_m[first + 1])
-    return float(
-        np.sum(line.profile.dist_m[first + 2][void] - line.profile.dist_m[first][void])
-    )
+    start, end = line.profile.piece_bounds_m
+    void = np.isnan(line.profile.ground_m[line.profile.piece_start + 1])
+    return float(np.sum(end[void] - start[void]))
 
 
 def _place(place: Place | None) -> Json | None:
@@ -244,12 +253,12 @@ def _void(void: VoidStretch | None) -> Json | None:
         "lat_deg": deg(void.lat_deg),
         "lon_deg": deg(void.lon_deg),
         # ground that would block is rounded down: the safe side
-        "blocks_above_m": math.floor(void.blocks_above_m * 10**M_DECIMALS)
-        / 10**M_DECIMALS,
+        "blocks_above_m": metres_down(void.blocks_above_m),
     }
 
 
-def _note(note: Note) -> Json:
+def note_record(note: Note) -> Json:
+    """A warning or caution as every record writes it."""
     return {"code": note.code, "text": storable(note.text)}
 
 

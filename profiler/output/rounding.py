@@ -35,6 +35,11 @@ def metres_up(value: float | None) -> float | None:
     return math.ceil(steps) / 10**M_DECIMALS
 
 
+def metres_down(value: float) -> float:
+    """Metres that must not be passed, rounded down."""
+    return math.floor(value * 10**M_DECIMALS) / 10**M_DECIMALS
+
+
 def deg(value: float) -> float:
     """Degrees as the record writes them."""
     return round(float(value), DEG_DECIMALS) + 0.0

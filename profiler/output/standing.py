@@ -3,11 +3,12 @@
 from typing import Any, NamedTuple
 
 from profiler.model import CoverKind, CoverSpan, PathProfile
-from profiler.output.naming import printable
+from profiler.output.naming import printable, storable
 from profiler.output.rounding import metres
 from profiler.sight.cover import called
 
-#: Stretches of one name that touch within this are one in the record [m].
+#: Stretches of one name that touch within this are one in the record [m]; its last
+#: digit.
 TOUCH_M = 0.001
 
 
@@ -65,7 +66,7 @@ def cover_rows(profile: PathProfile) -> list[dict[str, Any]]:
             "height_m": metres(max(span.height_m for span in run)),
             "least_height_m": metres(min(span.height_m for span in run)),
             "kind": run[0].kind.value,
-            "name": run[0].name.encode("utf-8", errors="replace").decode("utf-8"),
+            "name": storable(run[0].name),
         }
         for run in runs
     ]

@@ -169,7 +169,7 @@ def _fitted(profile: PathProfile, spans: Sequence[CoverSpan]) -> tuple[CoverSpan
 
 def _cut(profile: PathProfile, spans: tuple[CoverSpan, ...]) -> _Parts:
     """The pieces of a profile, those with an edge of cover inside cut there."""
-    whole = profile.piece_start[:, None] + np.arange(3)
+    whole = profile.piece_samples
     dist, ground = profile.dist_m[whole], profile.ground_m[whole]
     begins = dist[:, 0]
     edges = np.setdiff1d(
@@ -224,13 +224,13 @@ def split_height(profile: PathProfile, dist_m: float, height_m: float) -> Height
     Height
         Its ground and cover add up to ``height_m``.
     """
-    begins, ends = _bounds(profile)
+    begins, ends = profile.piece_bounds_m
     low = int(np.searchsorted(ends, dist_m - SAME_EDGE_M))
     high = int(np.searchsorted(begins, dist_m + SAME_EDGE_M, side="right"))
     near = np.arange(low, high)
     if near.size == 0:
         return Height(height_m, 0.0, None)
-    samples = profile.piece_start[near][:, None] + np.arange(3)
+    samples = profile.piece_samples[near]
     length = ends[near] - begins[near]
     part = np.clip((dist_m - begins[near]) / length, 0.0, 1.0)
     middle = samples[:, 1]
@@ -252,17 +252,11 @@ def cover_at(profile: PathProfile, dist_m: FloatArray) -> FloatArray:
     dist_m : (n,) float64 [m]
         Distances from the eye's end, none on the edge between two pieces.
     """
-    begins, _ = _bounds(profile)
+    begins, _ = profile.piece_bounds_m
     piece = np.searchsorted(begins, dist_m, side="right") - 1
     middle = profile.piece_start[np.maximum(piece, 0)] + 1
     cover: FloatArray = profile.cover_m[middle]
     return cover
-
-
-def _bounds(profile: PathProfile) -> tuple[FloatArray, FloatArray]:
-    """(k,) start and end of each piece [m]."""
-    first = profile.piece_start
-    return profile.dist_m[first], profile.dist_m[first + 2]
 
 
 def called(kind: CoverKind | None, name: str) -> str:

@@ -167,9 +167,8 @@ def raster_cover(raster: Terrain, path: GeodesicPath) -> PathCover:
     """
     _check_cells(raster)
     profile = sample_path(raster, path)
-    first = profile.piece_start
-    start, end = profile.dist_m[first], profile.dist_m[first + 2]
-    height = profile.ground_m[first + 1]
+    start, end = profile.piece_bounds_m
+    height = profile.ground_m[profile.piece_start + 1]
     files = first_and_more([file.path.name for file in raster.rasters])
     name = f"cover raster {files}"
     notes = [note for note in profile.notes if note.code != "seam-step"]

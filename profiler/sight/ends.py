@@ -56,6 +56,13 @@ def end_report(
     )
 
 
+def survey_gap_m(end: EndReport) -> float:
+    """Surveyed ground less the DEM's [m]; 0 without one of them."""
+    if end.ground_from != "surveyed" or end.dem_ground_m is None:
+        return 0.0
+    return (end.ground_m or 0.0) - end.dem_ground_m
+
+
 def _above_ground(station: Station, agl_m: float, ground_m: float, role: str) -> float:
     if agl_m < -ON_GROUND_M:
         who = station.name or f"the {role} end"

@@ -61,9 +61,35 @@ class Ground(NamedTuple):
         return self.dist_m[:, 0] + u * length, quadratic(self.height_m).at(u)
 
 
+def in_order(
+    ground: Ground, inner: tuple[FloatArray, ...]
+) -> tuple[FloatArray, FloatArray]:
+    """Samples of pieces and places inside them, in order of distance.
+
+    Parameters
+    ----------
+    ground : Ground
+    inner : tuple of (k,) float64 [1]
+        One u per piece, NaN for none.
+
+    Returns
+    -------
+    dist_m, height_m : (n,) float64 [m]
+    """
+    dist, height = [ground.dist_m.ravel()], [ground.height_m.ravel()]
+    for u in inner:
+        there = np.isfinite(u)
+        d, z = Ground(ground.dist_m[there], ground.height_m[there]).place(u[there])
+        dist.append(d)
+        height.append(z)
+    all_dist, all_height = np.concatenate(dist), np.concatenate(height)
+    order = np.argsort(all_dist, kind="stable")
+    return all_dist[order], all_height[order]
+
+
 def ground_of(profile: PathProfile) -> Ground:
     """Pieces of a path profile, ground and cover together."""
-    index = profile.piece_start[:, None] + np.arange(3)
+    index = profile.piece_samples
     return Ground(profile.dist_m[index], profile.top_m[index])
 
 

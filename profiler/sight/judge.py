@@ -2,56 +2,39 @@
 
 import math
 from dataclasses import replace
-from typing import NamedTuple
 
 import numpy as np
 
 from profiler.constants import GRAZING_M, M_PER_KM, VOID_BELOW_M
 from profiler.earth import bend, geodesic_path
 from profiler.errors import InputError
-from profiler.kernels.circle import elevation_tangent
 from profiler.model import (
     Air,
     Bending,
-    BoolArray,
     EndReport,
     GeodesicPath,
     OtherGround,
     PathProfile,
-    Place,
     SightLine,
     Station,
-    Stretch,
-    Verdict,
-    VoidStretch,
 )
-from profiler.sight.case import QUARTER_TURN, Case, Look, look_at
+from profiler.sight.case import QUARTER_TURN, Case, look_at
 from profiler.sight.cover_sources import CoverAlong, with_cover
-from profiler.sight.ends import end_report
+from profiler.sight.ends import end_report, survey_gap_m
 from profiler.sight.feet import foot_notes
-from profiler.sight.ground import ground_of, joined, with_ends
-from profiler.sight.line import blocked_runs, decisive
-from profiler.sight.needed import needed
-from profiler.sight.notes import cautions_for, warnings_for
+from profiler.sight.ground import ground_of, with_ends
 from profiler.sight.outside import check_inside
 from profiler.sight.own_hill import own_hill_radius, stands_bare
-from profiler.sight.places import place_at, stretch_of, void_stretches
+from profiler.sight.places import void_stretches
+from profiler.sight.sight_line import (
+    Ready,
+    decisive_index,
+    sight_line_of,
+    verdict_of,
+)
 from profiler.sight.target import shown_target
-from profiler.sight.view import front_crest_index, horizon_index, is_seen, rays
 from profiler.terrain import Terrain, sample_path
 from profiler.terrain.at_points import ground_at
-
-
-class _Ready(NamedTuple):
-    """A question with everything that it stands on."""
-
-    path: GeodesicPath
-    profile: PathProfile
-    earth: Bending
-    ends: tuple[EndReport, EndReport]
-    case: Case
-    look: Look
-    void: VoidStretch | None
 
 
 def judge(
@@ -113,11 +96,11 @@ def judge(
     )
     profile = replace(profile, notes=profile.notes + feet)
     case = _case(path, profile, earth, ends, hill_m=hill_m, near_m=ignore_near_m)
-    ready = _look(path, profile, earth, ends, case, void_below_m)
+    ready = _look(path, profile, earth, ends, case=case, void_below_m=void_below_m)
     other = None
     if _survey_matters(eye, ends[0]) or _survey_matters(target, ends[1]):
-        other = _on_dem_ground(eye, target, ready, void_below_m)
-    return _answer(ready, other, void_below_m)
+        other = _on_dem_ground(eye, target, ready)
+    return sight_line_of(ready, other=other)
 
 
 def _check_lengths(
@@ -145,7 +128,7 @@ def _check_lengths(
 
 
 def _check_cell(profile: PathProfile, path: GeodesicPath) -> None:
-    cell = max((side for f in profile.files for side in f.cell_m), default=0.0)
+    cell = profile.coarsest_cell_m
     if path.length_m < cell:
         msg = (
             f"The points are {path.length_m:.1f} m apart, less than one cell "
@@ -196,10 +179,7 @@ def _known(value: float) -> float | None:
 
 def _survey_matters(station: Station, end: EndReport) -> bool:
     """Whether the survey differs enough from the DEM for both answers."""
-    if end.ground_from != "surveyed" or end.dem_ground_m is None:
-        return False
-    gap = abs((end.ground_m or 0.0) - end.dem_ground_m)
-    return gap > station.survey_gap_m
+    return abs(survey_gap_m(end)) > station.survey_gap_m
 
 
 def _case(
@@ -229,9 +209,10 @@ def _look(
     profile: PathProfile,
     earth: Bending,
     ends: tuple[EndReport, EndReport],
+    *,
     case: Case,
     void_below_m: float,
-) -> _Ready:
+) -> Ready:
     look = look_at(case)
     voids = [
         v
@@ -239,18 +220,10 @@ def _look(
         if v.blocks_above_m < void_below_m
     ]
     lowest = min(voids, key=lambda v: v.blocks_above_m, default=None)
-    return _Ready(path, profile, earth, ends, case, look, lowest)
+    return Ready(path, profile, earth, ends, case, look, lowest, void_below_m)
 
 
-def _verdict(ready: _Ready) -> Verdict:
-    if ready.look.is_blocked:
-        return Verdict.BLOCKED
-    return Verdict.CLEAR if ready.void is None else Verdict.UNDETERMINED
-
-
-def _on_dem_ground(
-    eye: Station, target: Station, ready: _Ready, void_below_m: float
-) -> OtherGround:
+def _on_dem_ground(eye: Station, target: Station, ready: Ready) -> OtherGround:
     """The same question without the surveyed elevations."""
     from_dem, to_dem = (end.dem_ground_m for end in ready.ends)
     ends = (
@@ -265,140 +238,23 @@ def _on_dem_ground(
         hill_m=ready.case.hill_m,
         near_m=ready.case.near_m,
     )
-    other = _look(ready.path, ready.profile, ready.earth, ends, case, void_below_m)
-    at = _decisive_index(other)
+    other = _look(
+        ready.path,
+        ready.profile,
+        ready.earth,
+        ends,
+        case=case,
+        void_below_m=ready.void_below_m,
+    )
+    at = decisive_index(other)
     shown = shown_target(
         case, other.look, height_m=ends[1].agl_m or 0.0, crest_tangent=None
     ).shown
     return OtherGround(
-        verdict=_verdict(other),
+        verdict=verdict_of(other),
         margin_m=None if at is None else float(other.look.at.margin_m[at]),
         at_m=None if at is None else float(other.look.at.dist_m[at]),
         shown=shown,
         from_ground_m=ends[0].ground_m,
         to_ground_m=ends[1].ground_m,
     )
-
-
-def _decisive_index(ready: _Ready) -> int | None:
-    eye, target = ready.path.start, ready.path.end
-    low_end_first = (eye.lat_deg, eye.lon_deg) <= (target.lat_deg, target.lon_deg)
-    return decisive(
-        ready.look.line,
-        ready.look.at,
-        blocked=ready.look.is_blocked,
-        low_end_first=low_end_first,
-    )
-
-
-def _spot(ready: _Ready, index: int | None) -> Place | None:
-    if index is None:
-        return None
-    at = ready.look.at
-    dist, ground = float(at.dist_m[index]), float(at.ground_m[index])
-    return place_at(ready.path, ready.look.line, dist, ground, profile=ready.profile)
-
-
-def _seen_place(ready: _Ready, index: int | None) -> Place | None:
-    if index is None:
-        return None
-    seen = ready.look.seen
-    dist, ground = float(seen.dist_m[index]), float(seen.ground_m[index])
-    return place_at(ready.path, ready.look.line, dist, ground, profile=ready.profile)
-
-
-def _stretches(ready: _Ready) -> tuple[Stretch, ...]:
-    if not ready.look.is_blocked:
-        return ()
-    runs = blocked_runs(ready.look.line, ready.look.known, ready.look.at)
-    return tuple(
-        stretch_of(ready.path, ready.look.at, run, profile=ready.profile)
-        for run in runs
-    )
-
-
-def _first_block(ready: _Ready) -> int | None:
-    above = np.flatnonzero(ready.look.at.margin_m < -GRAZING_M)
-    return int(above[0]) if above.size else None
-
-
-def _crest_index(ready: _Ready) -> int | None:
-    seen, case = ready.look.seen, ready.case
-    if ready.look.is_blocked:
-        return horizon_index(seen)
-    return front_crest_index(seen, case.eye_m, case.kappa_per_m)
-
-
-def _answer(ready: _Ready, other: OtherGround | None, void_below_m: float) -> SightLine:
-    case, look, line = ready.case, ready.look, ready.look.line
-    crest = _crest_index(ready)
-    stretches = _stretches(ready)
-    place = _spot(ready, _decisive_index(ready))
-    along = np.where(
-        ready.profile.dist_m <= line.length_m, line.height(ready.profile.dist_m), np.nan
-    )
-    return SightLine(
-        verdict=_verdict(ready),
-        grazing=not look.is_blocked and look.closest_m <= GRAZING_M,
-        margin_m=None if place is None else place.margin_m,
-        decisive=place,
-        first_block=_spot(ready, _first_block(ready)),
-        horizon=_seen_place(ready, horizon_index(look.seen)),
-        front_crest=_seen_place(ready, crest),
-        blocked_stretches=stretches,
-        target=shown_target(
-            case,
-            look,
-            height_m=ready.ends[1].agl_m or 0.0,
-            crest_tangent=None if crest is None else float(look.seen.tangent[crest]),
-        ),
-        needed=needed(
-            case,
-            look,
-            from_ground_m=ready.ends[0].ground_m,
-            to_ground_m=ready.ends[1].ground_m,
-            radius_m=ready.path.radius_m,
-            stretches=stretches,
-        ),
-        path=ready.path,
-        from_elevation_deg=_elevation_deg(look, line.eye_m, line.aim_m),
-        to_elevation_deg=_elevation_deg(look, line.aim_m, line.eye_m),
-        earth=ready.earth,
-        from_=ready.ends[0],
-        to=ready.ends[1],
-        void=ready.void,
-        cautions=cautions_for(ready.profile, ready.path, ready.earth),
-        warnings=warnings_for(ready.profile, ready.ends),
-        other_ground=other,
-        profile=ready.profile,
-        sight_m=along,
-        margin_along_m=along - ready.profile.top_m,
-        ground_seen=_ground_seen(ready),
-        aim_distance_m=line.length_m,
-        aim_m=line.aim_m,
-        ignore_near_m=case.near_m,
-        void_below_m=void_below_m,
-    )
-
-
-def _elevation_deg(look: Look, eye_m: float, aim_m: float) -> float:
-    line = look.line
-    tangent = elevation_tangent(line.length_m, aim_m, eye_m, line.kappa_per_m)
-    return math.degrees(math.atan(tangent))
-
-
-def _ground_seen(ready: _Ready) -> BoolArray:
-    """(n,) whether the ground at each sample of the profile is seen from the eye."""
-    case, dist = ready.case, ready.profile.dist_m
-    ground = joined(case.ground.known, ground_of(ready.profile).known)
-    all_rays = rays(ground, case.eye_m, case.kappa_per_m)
-    seen = dist == 0.0
-    if all_rays.dist_m.size:
-        # where the ground steps two samples share a distance, the nearer side first
-        second = np.diff(dist, prepend=-1.0) == 0.0
-        low = np.searchsorted(all_rays.dist_m, dist)
-        high = np.searchsorted(all_rays.dist_m, dist, side="right") - 1
-        there = np.minimum(np.where(second, high, low), all_rays.dist_m.size - 1)
-        seen |= is_seen(all_rays)[there] & (all_rays.dist_m[there] == dist)
-    known: BoolArray = seen & np.isfinite(ready.profile.ground_m)
-    return known

@@ -7,7 +7,7 @@ import numpy as np
 from profiler.constants import GRAZING_M
 from profiler.kernels.circle import sight_height
 from profiler.model.arrays import BoolArray, FloatArray, IntArray
-from profiler.sight.ground import TOO_NEAR_M, Ground, inner_roots, quadratic
+from profiler.sight.ground import TOO_NEAR_M, Ground, in_order, inner_roots, quadratic
 
 #: Differences of margins below this are rounding [m]; heights carry 1e-12 m.
 ROUNDING_M = 1e-9
@@ -71,18 +71,10 @@ def spots(line: Line, ground: Ground) -> Spots:
         2.0 * (fit.c * alpha - fit.a * gamma),
         fit.c * beta - fit.b * gamma,
     )
-    dist, height = [ground.dist_m.ravel()], [ground.height_m.ravel()]
-    for u in (vertex, first[:, 0], first[:, 1]):
-        there = np.isfinite(u)
-        d, z = Ground(ground.dist_m[there], ground.height_m[there]).place(u[there])
-        dist.append(d)
-        height.append(z)
-    all_dist, all_height = np.concatenate(dist), np.concatenate(height)
-    order = np.argsort(all_dist, kind="stable")
-    all_dist, all_height = all_dist[order], all_height[order]
-    between = np.minimum(all_dist, line.length_m - all_dist) > TOO_NEAR_M
-    all_dist, all_height = all_dist[between], all_height[between]
-    return Spots(all_dist, all_height, line.height(all_dist) - all_height)
+    dist, height = in_order(ground, (vertex, first[:, 0], first[:, 1]))
+    between = np.minimum(dist, line.length_m - dist) > TOO_NEAR_M
+    dist, height = dist[between], height[between]
+    return Spots(dist, height, line.height(dist) - height)
 
 
 def first_to_touch(line: Line, at: Spots) -> FloatArray:

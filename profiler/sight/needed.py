@@ -11,6 +11,7 @@ from dataclasses import replace
 import numpy as np
 
 from profiler.constants import GRAZING_M
+from profiler.earth import kappa_from_ke, kappa_from_kr
 from profiler.kernels.circle import ray_height
 from profiler.model import Needed, Stretch
 from profiler.sight.case import QUARTER_TURN, Case, Look, least_ratio, look_at
@@ -21,6 +22,8 @@ from profiler.sight.view import before, horizon_index, rays
 HEIGHT_STEP_M = 0.01
 #: Step to which ke and kr are rounded [1]: the record's last digit.
 RATIO_STEP = 1e-6
+#: Decimals that hold a whole number of either step [1].
+STEP_DECIMALS = 9
 #: Share of a step by which a whole number of steps may miss it [1]; rounding.
 WHOLE_STEP = 1e-9
 #: Tries to raise a rounded figure before it is given up [1].
@@ -121,7 +124,7 @@ def _safe(
     for extra in range(MOST_TRIES):
         rounded = (steps + extra) * step
         if rounded <= most and clears(rounded):
-            return round(rounded, 9)
+            return round(rounded, STEP_DECIMALS)
     return None
 
 
@@ -253,10 +256,10 @@ def _ratios(
         return None, None
 
     def clears_kr(kr: float) -> bool:
-        return _clears(replace(case, kappa_per_m=(1.0 - kr) / radius_m))
+        return _clears(replace(case, kappa_per_m=kappa_from_kr(kr, radius_m=radius_m)))
 
     def clears_ke(ke: float) -> bool:
-        return _clears(replace(case, kappa_per_m=1.0 / (ke * radius_m)))
+        return _clears(replace(case, kappa_per_m=kappa_from_ke(ke, radius_m=radius_m)))
 
     kr = _safe(1.0 - kappa * radius_m, RATIO_STEP, clears_kr, NO_HELP_ABOVE_KR)
     if kr is None or kappa <= 0.0:

@@ -3,7 +3,9 @@
 import numpy as np
 
 from profiler.constants import LOWEST_GROUND_M, M_PER_KM, TALLEST_MAST_M, VOID_BELOW_M
+from profiler.kernels.runs import runs_of_true
 from profiler.model import Bending, DemKind, EndReport, GeodesicPath, Note, PathProfile
+from profiler.sight.ends import survey_gap_m
 
 #: Shortest run of ground at exactly 0 that looks like filled sea or void [m]; our
 #: choice: longer than any beach a path runs along.
@@ -29,7 +31,7 @@ def warnings_for(
                 f"mast. If it is above sea level, say --{role}-amsl."
             )
             notes.append(Note(code="tall", text=text))
-        gap = _survey_gap(end)
+        gap = survey_gap_m(end)
         if abs(gap) > ODD_SURVEY_M:
             side = "above" if gap > 0.0 else "below"
             text = (
@@ -44,13 +46,6 @@ def warnings_for(
         )
         notes.append(Note(code="sea-filled", text=text))
     return tuple(notes)
-
-
-def _survey_gap(end: EndReport) -> float:
-    """Surveyed ground less the DEM's [m]; 0 without one of them."""
-    if end.ground_from != "surveyed" or end.dem_ground_m is None:
-        return 0.0
-    return (end.ground_m or 0.0) - end.dem_ground_m
 
 
 def _height_notes(profile: PathProfile) -> list[Note]:
@@ -75,12 +70,10 @@ def _height_notes(profile: PathProfile) -> list[Note]:
 
 def _longest_zero_run(profile: PathProfile) -> tuple[float, float]:
     """Start and end of the longest run of ground at exactly 0 [m]."""
-    zero = np.concatenate([[False], profile.ground_m == 0.0, [False]])
-    edges = np.flatnonzero(np.diff(zero.astype(np.int8)))
-    if edges.size == 0:
+    first, end = runs_of_true(profile.ground_m == 0.0)
+    if first.size == 0:
         return 0.0, 0.0
-    starts = profile.dist_m[edges[::2]]
-    ends = profile.dist_m[edges[1::2] - 1]
+    starts, ends = profile.dist_m[first], profile.dist_m[end - 1]
     longest = int(np.argmax(ends - starts))
     return float(starts[longest]), float(ends[longest])
 
@@ -99,7 +92,7 @@ def cautions_for(
         "licensed practice rule."
     )
     notes = [Note(code="check-on-site", text=text)]
-    cell = max((side for f in profile.files for side in f.cell_m), default=0.0)
+    cell = profile.coarsest_cell_m
     if cell > COARSE_CELL_M:
         text = f"{cell:.0f} m posts can miss metres of a sharp crest or summit."
         notes.append(Note(code="coarse-posts", text=text))

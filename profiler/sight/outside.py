@@ -21,12 +21,10 @@ def check_inside(terrain: Terrain, station: Station, *, role: str) -> None:
     OutsideDemError
         If the point misses the DEM; says so when the exchanged numbers would fit.
     """
+    if has_ground(terrain, station):
+        return
     point = station.point
-    if is_inside(terrain, point):
-        return
-    if station.amsl_m is not None or station.surveyed_ground_m is not None:
-        return
-    if _fits_exchanged(terrain, point):
+    if fits_exchanged(terrain, point):
         msg = (
             f"--{role}: {point.lat_deg:g}, {point.lon_deg:g} lies outside the DEM. "
             "With latitude and longitude exchanged the point fits: "
@@ -35,12 +33,19 @@ def check_inside(terrain: Terrain, station: Station, *, role: str) -> None:
         raise OutsideDemError(msg)
     msg = (
         f"--{role}: {_named(station)} lies outside the DEM, which covers "
-        f"{outline_text(terrain)}. Check sign and order, or add files."
+        f"{_outline_text(terrain)}. Check sign and order, or add files."
     )
     raise OutsideDemError(msg)
 
 
-def _fits_exchanged(terrain: Terrain, point: Point) -> bool:
+def has_ground(terrain: Terrain, station: Station) -> bool:
+    """Whether a station lies within the files, or needs no ground of theirs."""
+    stated = station.amsl_m is not None or station.surveyed_ground_m is not None
+    return stated or is_inside(terrain, station.point)
+
+
+def fits_exchanged(terrain: Terrain, point: Point) -> bool:
+    """Whether the files hold a point once latitude and longitude change places."""
     try:
         other = Point(lat_deg=point.lon_deg, lon_deg=point.lat_deg)
     except InputError:
@@ -54,7 +59,7 @@ def _named(station: Station) -> str:
     return f"{station.name} ({where})" if station.name else where
 
 
-def outline_text(terrain: Terrain) -> str:
+def _outline_text(terrain: Terrain) -> str:
     """The box of latitude and longitude that the files cover, in words."""
     south, west, north, east = terrain.outline_deg()
     return f"{south:.3f} to {north:.3f} N, {west:.3f} to {east:.3f} E"

@@ -7,7 +7,7 @@ import numpy as np
 from profiler.constants import CREST_DEPTH_M
 from profiler.kernels.circle import elevation_tangent, ray_height
 from profiler.model.arrays import BoolArray, FloatArray
-from profiler.sight.ground import TOO_NEAR_M, Ground, inner_roots, quadratic
+from profiler.sight.ground import TOO_NEAR_M, Ground, in_order, inner_roots, quadratic
 
 #: Ground whose angle is this far below the highest so far still counts as seen [1];
 #: rounding of the angle, ten micrometres at ten kilometres.
@@ -49,18 +49,10 @@ def rays(ground: Ground, eye_m: float, kappa_per_m: float) -> Rays:
             2.0 * (fit.c * near / step - half * near * step),
             fit.c - half * step * step,
         )
-    dist, height = [ground.dist_m.ravel()], [ground.height_m.ravel()]
-    for u in (best[:, 0], best[:, 1]):
-        there = np.isfinite(u)
-        d, z = Ground(ground.dist_m[there], ground.height_m[there]).place(u[there])
-        dist.append(d)
-        height.append(z)
-    all_dist, all_height = np.concatenate(dist), np.concatenate(height)
-    order = np.argsort(all_dist, kind="stable")
-    order = order[all_dist[order] > TOO_NEAR_M]
-    all_dist, all_height = all_dist[order], all_height[order]
-    tangent = elevation_tangent(all_dist, all_height, eye_m, kappa_per_m)
-    return Rays(all_dist, all_height, tangent)
+    dist, height = in_order(ground, (best[:, 0], best[:, 1]))
+    beyond = dist > TOO_NEAR_M
+    dist, height = dist[beyond], height[beyond]
+    return Rays(dist, height, elevation_tangent(dist, height, eye_m, kappa_per_m))
 
 
 def before(seen: Rays, dist_m: float) -> Rays:

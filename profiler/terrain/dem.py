@@ -161,7 +161,9 @@ def _header_notes(
     """What a reader must know about the files before any post is read."""
     silent = [r.path.name for r in rasters if r.unit_stated is None]
     if unit is None and silent:
-        text = f"{first_and_more(silent)}: unit of heights not stated; metres are taken."
+        text = (
+            f"{first_and_more(silent)}: unit of heights not stated; metres are taken."
+        )
         yield Note(code="unit-not-stated", text=text)
     for stated in sorted({r.unit_stated for r in rasters if r.unit_stated}):
         if unit not in (None, stated):

@@ -2,7 +2,7 @@
 
 from dataclasses import dataclass
 from pathlib import Path
-from typing import Final
+from typing import Any, Final
 
 import numpy as np
 import rasterio
@@ -180,7 +180,7 @@ def inspect_file(
         if crs is not None:
             raster = raster_of(dataset, path, crs=crs, unit=None)
         tally = scan(dataset, raster or _coding_of(dataset, path), progress)
-        return _report(dataset, path, raster, problem, tally)
+        return _report(dataset, path, raster=raster, problem=problem, tally=tally)
 
 
 def _crs_or_problem(
@@ -209,63 +209,86 @@ def _coding_of(dataset: "rasterio.DatasetReader", path: Path) -> _Coding:
 def _report(
     dataset: "rasterio.DatasetReader",
     path: Path,
+    *,
     raster: Raster | None,
     problem: str | None,
     tally: Tally,
 ) -> FileReport:
     crs = None if raster is None else raster.crs
-    affine = affine_of(dataset)
-    lattice = None if raster is None else group_rasters([raster])[0]
-    coded = raster or _coding_of(dataset, path)
     stated = unit_from_text(dataset.units[0]) or (crs.vertical_unit if crs else None)
     kind = kind_of(dataset)
-    notes = [*post_notes(tally), *file_notes(dataset, crs)]
     return FileReport(
         name=path.name,
         bytes=path.stat().st_size,
         sha256=sha256_of(path),
-        driver=dataset.driver,
-        crs=crs.crs_name if crs else None,
-        crs_declared=crs is not None and not dataset.crs,
         crs_problem=problem,
-        map_unit=crs.unit_name if crs else None,
-        rows=dataset.height,
-        cols=dataset.width,
-        step=(
+        **_place_of(dataset, raster),
+        unit_text=dataset.units[0] or (crs.vertical_unit if crs else None) or None,
+        unit_stated=stated,
+        unit_used=(raster or _coding_of(dataset, path)).unit,
+        vertical_datum=crs.vertical_datum if crs else None,
+        kind_stated=kind,
+        **_posts_of(tally, affine_of(dataset), crs),
+        **_storage_of(dataset),
+        notes=(*post_notes(tally), *file_notes(dataset, crs)),
+        to_declare=tuple(declarations(crs, problem, dataset.units[0], stated, kind)),
+    )
+
+
+def _place_of(
+    dataset: "rasterio.DatasetReader", raster: Raster | None
+) -> dict[str, Any]:
+    """Fields of the report that tell where the posts lie."""
+    crs = None if raster is None else raster.crs
+    lattice = None if raster is None else group_rasters([raster])[0]
+    affine = affine_of(dataset)
+    return {
+        "crs": crs.crs_name if crs else None,
+        "crs_declared": crs is not None and not dataset.crs,
+        "map_unit": crs.unit_name if crs else None,
+        "rows": dataset.height,
+        "cols": dataset.width,
+        "step": (
             float(np.hypot(affine.dx_row, affine.dy_row)),
             float(np.hypot(affine.dx_col, affine.dy_col)),
         ),
-        rotated=affine.dx_row != 0.0 or affine.dy_col != 0.0,
-        cell_m=lattice.cell_m if lattice else None,
-        outline_deg=outline_of(lattice) if lattice else None,
-        outline_crs=_outline_crs(affine, dataset.shape),
-        registration=dataset.tags().get("AREA_OR_POINT", "untagged").lower(),
-        dtype=dataset.dtypes[0],
-        scale=dataset.scales[0],
-        offset=dataset.offsets[0],
-        unit_text=dataset.units[0] or (crs.vertical_unit if crs else None) or None,
-        unit_stated=stated,
-        unit_used=coded.unit,
-        vertical_datum=crs.vertical_datum if crs else None,
-        kind_stated=kind,
-        nodata=dataset.nodata,
-        mask=coded.has_mask,
-        posts=tally.posts,
-        voids=tally.voids,
-        zeros=tally.zeros,
-        lowest=_spot(tally.lowest, affine, crs) if tally.lowest else None,
-        highest=_spot(tally.highest, affine, crs) if tally.highest else None,
-        fillers=tuple(_group(f, affine, crs) for f in tally.fillers.values()),
-        implausible=_group(tally.outside, affine, crs) if tally.outside else None,
-        date=dataset.tags().get(_DATE_TAG),
-        description=dataset.descriptions[0] or "",
-        tiled=bool(dataset.profile.get("tiled", False)),
-        block=dataset.block_shapes[0],
-        compression=dataset.compression.value if dataset.compression else None,
-        overviews=tuple(dataset.overviews(1)),
-        notes=tuple(notes),
-        to_declare=tuple(declarations(crs, problem, dataset.units[0], stated, kind)),
-    )
+        "rotated": affine.dx_row != 0.0 or affine.dy_col != 0.0,
+        "cell_m": lattice.cell_m if lattice else None,
+        "outline_deg": outline_of(lattice) if lattice else None,
+        "outline_crs": _outline_crs(affine, dataset.shape),
+        "registration": dataset.tags().get("AREA_OR_POINT", "untagged").lower(),
+    }
+
+
+def _posts_of(tally: Tally, affine: Affine, crs: Projector | None) -> dict[str, Any]:
+    """Fields of the report that tell what the posts hold."""
+    return {
+        "posts": tally.posts,
+        "voids": tally.voids,
+        "zeros": tally.zeros,
+        "lowest": _spot(tally.lowest, affine, crs) if tally.lowest else None,
+        "highest": _spot(tally.highest, affine, crs) if tally.highest else None,
+        "fillers": tuple(_group(f, affine, crs) for f in tally.fillers.values()),
+        "implausible": _group(tally.outside, affine, crs) if tally.outside else None,
+    }
+
+
+def _storage_of(dataset: "rasterio.DatasetReader") -> dict[str, Any]:
+    """Fields of the report that tell how the file keeps its posts."""
+    return {
+        "driver": dataset.driver,
+        "dtype": dataset.dtypes[0],
+        "scale": dataset.scales[0],
+        "offset": dataset.offsets[0],
+        "nodata": dataset.nodata,
+        "mask": hides_posts(dataset),
+        "date": dataset.tags().get(_DATE_TAG),
+        "description": dataset.descriptions[0] or "",
+        "tiled": bool(dataset.profile.get("tiled", False)),
+        "block": dataset.block_shapes[0],
+        "compression": dataset.compression.value if dataset.compression else None,
+        "overviews": tuple(dataset.overviews(1)),
+    }
 
 
 def _outline_crs(

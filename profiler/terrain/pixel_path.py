@@ -29,7 +29,12 @@ MOST_HALVINGS: Final = 10
 ON_POST_CELLS: Final = 1e-7
 #: Steps of the safeguarded Newton iteration [1]; bisection alone needs 53.
 MOST_STEPS: Final = 60
-
+#: Places on a monotone stretch between which a crossing is first guessed [1]; our
+#: choice.
+GUESS_PLACES: Final = 65
+#: A crossing is found when it misses its level by less than this [cells]: far below
+#: what counts as on a post.
+ON_LEVEL_CELLS: Final = ON_POST_CELLS / 100.0
 #: Coefficients below this share of the largest are rounding [1].
 ROUNDING: Final = 1e-13
 #: Roots with a smaller imaginary part are real [1]; a false one only splits a
@@ -213,13 +218,13 @@ def _meet(
     lo = np.full(level.shape, span[0])
     hi = np.full(level.shape, span[1])
     rising = chebyshev.chebval(span[1], coef) >= chebyshev.chebval(span[0], coef)
-    grid = np.linspace(span[0], span[1], 65)
+    grid = np.linspace(span[0], span[1], GUESS_PLACES)
     values = chebyshev.chebval(grid, coef)
     order = slice(None) if rising else slice(None, None, -1)
     at = np.interp(level, values[order], grid[order])
     for _ in range(MOST_STEPS):
         miss = chebyshev.chebval(at, coef) - level
-        if np.max(np.abs(miss)) <= ON_POST_CELLS / 100.0:
+        if np.max(np.abs(miss)) <= ON_LEVEL_CELLS:
             break
         above = (miss > 0.0) == rising
         hi = np.where(above, at, hi)

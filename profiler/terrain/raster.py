@@ -30,9 +30,10 @@ from profiler.terrain.units import unit_from_text
 SENTINELS: Final = (-32768.0, -32767.0, -9999.0, -99999.0, -999999.0)
 #: Magnitude above which a raw value is a filler such as 3.4e38 [raw].
 FILLER_ABOVE: Final = 1e30
-#: Memory for decoded blocks of all files [bytes]; our choice, far below the bar.
+#: Memory for decoded blocks of all files [bytes]; our choice: a path's tiles fit in.
 BLOCK_CACHE_BYTES: Final = 64 * 2**20
-
+#: Posts along a side of the thinned grid whose range a message names [1]; our choice.
+THINNED_POSTS: Final = 512
 
 RawArray = NDArray[Any]
 
@@ -75,7 +76,6 @@ class Raster:
     affine: Affine
     """Post (row, col) to CRS units."""
     crs: Projector
-    dtype: str
     nodata: float | None
     scale: float
     offset: float
@@ -85,8 +85,6 @@ class Raster:
     """Unit of the heights in use: m, ft or us-ft."""
     unit_stated: str | None
     """Unit that the file states, or None."""
-    point_registered: bool
-    description: str
     stamp: tuple[int, int]
     """Size [bytes] and time of change [ns] when the header was read."""
 
@@ -190,15 +188,12 @@ def raster_of(
         cols=dataset.width,
         affine=affine_of(dataset),
         crs=crs,
-        dtype=dataset.dtypes[0],
         nodata=dataset.nodata,
         scale=dataset.scales[0],
         offset=dataset.offsets[0],
         has_mask=hides_posts(dataset),
         unit=unit or stated or "m",
         unit_stated=stated,
-        point_registered=dataset.tags().get("AREA_OR_POINT") == "Point",
-        description=dataset.descriptions[0] or "",
         stamp=stamp_of(path),
     )
 
@@ -270,7 +265,7 @@ def crs_of(
 
 def _height_range(dataset: "rasterio.DatasetReader") -> tuple[float, float]:
     """Lowest and highest raw value, from a thinned read."""
-    shape = (min(dataset.height, 512), min(dataset.width, 512))
+    shape = (min(dataset.height, THINNED_POSTS), min(dataset.width, THINNED_POSTS))
     posts = dataset.read(1, out_shape=shape, masked=True).astype("float64")
     posts = np.ma.masked_invalid(posts)
     if posts.count() == 0:

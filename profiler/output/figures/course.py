@@ -8,6 +8,7 @@ import numpy as np
 
 from profiler.errors import InputError
 from profiler.kernels.circle import ray_height, sight_height
+from profiler.kernels.runs import runs_of_true
 from profiler.model import BoolArray, FloatArray, IntArray, SightLine
 
 CURVED_SEA: Final = "curved-sea"
@@ -169,11 +170,10 @@ def thinned(dist_m: FloatArray, margin_m: FloatArray, length_m: float) -> IntArr
 def void_runs(course: Course) -> list[tuple[float, float]]:
     """Start and end [m] of every stretch of path without ground."""
     profile = course.line.profile
-    void = np.concatenate([[False], np.isnan(profile.ground_m), [False]])
-    edges = np.flatnonzero(np.diff(void.astype(np.int8)))
+    first, end = runs_of_true(np.isnan(profile.ground_m))
     last = profile.dist_m.size - 1
     # the known samples on both sides stand at the edges of the void
     return [
         (float(profile.dist_m[max(a - 1, 0)]), float(profile.dist_m[min(b, last)]))
-        for a, b in zip(edges[::2], edges[1::2], strict=True)
+        for a, b in zip(first, end, strict=True)
     ]

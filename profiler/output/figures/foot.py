@@ -6,7 +6,7 @@ from typing import Final
 from matplotlib.figure import Figure
 
 from profiler.constants import VERSION
-from profiler.model import Note, SightLine, SourceFile
+from profiler.model import DemKind, Note, SightLine, SourceFile
 from profiler.output.figures import page
 from profiler.output.figures.course import Course
 from profiler.output.figures.ends import Limits
@@ -22,6 +22,12 @@ HASH_SHOWN: Final = 8
 WHOLE_POSTS_M: Final = 9.5
 #: Characters of a line of the footer [1]; the page holds about 190.
 LINE_MOST: Final = 175
+#: What the heights show, as stated.
+KIND_WORDS: Final = {
+    DemKind.BARE: "bare ground",
+    DemKind.SURFACE: "surface model",
+    DemKind.UNKNOWN: "bare or surface not stated",
+}
 WHO: Final = f"overbrow {VERSION}, terrain line-of-sight profiler."
 
 
@@ -39,6 +45,16 @@ def ground_text(files: tuple[SourceFile, ...]) -> str:
 def side_text(side_m: float) -> str:
     """A distance between posts: whole metres, or one decimal when it is small."""
     return f"{side_m:.0f}" if side_m >= WHOLE_POSTS_M else ratio(side_m, 1)
+
+
+def left_out_text(line: SightLine) -> str:
+    """What of the ground was left out on request; empty when nothing was."""
+    text = ""
+    if line.ignore_near_m > 0.0:
+        text += f", ground within {ratio(line.ignore_near_m, 1)} m of the ends left out"
+    if line.profile.sea_level_m is not None:
+        text += f", voids taken as water at {ratio(line.profile.sea_level_m, 1)} m"
+    return text
 
 
 def warning_text(warnings: tuple[Note, ...]) -> str:
@@ -70,8 +86,8 @@ def footer_lines(course: Course, limits: Limits, scale: Scale) -> list[str]:
     times = times_text(scale.exaggeration(limits.low_m, limits.high_m))
     both = both.replace("-", "−")
     lines = [
-        f"Ground: {ground_text(profile.files)}, {profile.interpolation.value}.  "
-        f"Air: {both} ({how}).",
+        f"Ground: {ground_text(profile.files)}, {profile.interpolation.value}, "
+        f"{KIND_WORDS[profile.dem_kind]}{left_out_text(line)}.  Air: {both} ({how}).",
         f"Drawn: {sea}, heights drawn {times} times.  {WHO}",
     ]
     if line.warnings:

@@ -19,12 +19,8 @@ APART_LEAST_IN: Final = 0.08
 APART_MOST_IN: Final = 0.24
 #: Distance between two rows [in].
 ROW_IN: Final = 0.16
-#: Height of a patch [in].
-PATCH_IN: Final = 0.1
 #: Letters are hinted to whole pixels and run widest in a small picture [1/in].
 SMALL_DPI: Final = 77.0
-#: Middle of small letters above their baseline [1 of their size].
-MIDDLE: Final = 0.36
 
 
 class Entry(NamedTuple):
@@ -107,14 +103,14 @@ def _rows(sized: list[_Sized], width: float) -> list[list[_Sized]]:
 
 def _sample(figure: Figure, entry: Entry, x: float, y: float) -> None:
     wide, tall = page.PAGE_IN
-    middle = y + page.SMALL / page.PT_PER_IN * MIDDLE
+    middle = y + page.SMALL / page.PT_PER_IN * page.LETTER_MIDDLE
     if entry.line is None:
         face, edge, hatch = entry.patch
         figure.add_artist(
             Rectangle(
-                (x / wide, (middle - PATCH_IN / 2.0) / tall),
+                (x / wide, (middle - page.PATCH_IN / 2.0) / tall),
                 SAMPLE_IN / wide,
-                PATCH_IN / tall,
+                page.PATCH_IN / tall,
                 facecolor=face,
                 edgecolor=edge,
                 hatch=hatch,

@@ -66,7 +66,7 @@ def marks_of(course: Course) -> tuple[list[Mark], int]:
         shown = sorted(worst, key=lambda pair: pair[0])
     marks = [_of_stretch(course, number, s) for number, s in shown]
     if line.decisive is not None and not marks:
-        marks.append(_of_place("1", line.decisive, "tightest"))
+        marks.append(_of_place("1", line.decisive, "decides"))
     others = ((FIRST_BLOCK, line.first_block), (HORIZON, line.horizon))
     for symbol, place in others:
         if place is not None and not _is_marked(marks, place):

@@ -30,13 +30,10 @@ GOVERNS_END_IN: Final = 3.85
 SAMPLE_IN: Final = 0.42
 NUMBER_END_IN: Final = 0.6
 GAP_IN: Final = 0.1
-PATCH_IN: Final = 0.1
 MARK: Final = 7.5
 #: Width of thin lines [pt].
 HAIR: Final = 0.8
-#: Middle of letters above their baseline [1 of their size].
-MIDDLE: Final = 0.36
-#: Characters of a line [1] and of a rule's source in lines.
+#: Characters of a line of a rule's source [1].
 LINE_MOST: Final = 62
 
 Json = dict[str, Any]
@@ -68,7 +65,7 @@ class _Column:
     def sample(self, ends_in: Sequence[float], **look: Any) -> None:
         """A sample at the present line."""
         wide, tall = page.PAGE_IN
-        middle = (self.y + page.SMALL / page.PT_PER_IN * MIDDLE) / tall
+        middle = (self.y + page.SMALL / page.PT_PER_IN * page.LETTER_MIDDLE) / tall
         xs = [(AREA.left + end) / wide for end in ends_in]
         self.figure.add_artist(Line2D(xs, [middle] * len(xs), **look))
 
@@ -79,7 +76,7 @@ class _Column:
             Rectangle(
                 (AREA.left / wide, self.y / tall),
                 width_in / wide,
-                PATCH_IN / tall,
+                page.PATCH_IN / tall,
                 lw=HAIR,
                 **look,
             )

@@ -78,6 +78,12 @@ Z_EDGE: Final = 4
 Z_RAY: Final = 5
 Z_MARK: Final = 7
 
+#: Distance between two lines of small letters [in].
+SMALL_LINE_IN: Final = 0.15
+#: Middle of small letters above their baseline [1 of their size].
+LETTER_MIDDLE: Final = 0.36
+#: Height of a sample of an area in a key [in].
+PATCH_IN: Final = 0.1
 #: Lowest baseline of a text above the bottom of its area [in].
 BASELINE_IN: Final = 0.05
 

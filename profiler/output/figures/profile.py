@@ -5,6 +5,7 @@ from typing import Any, Final
 import numpy as np
 from matplotlib.axes import Axes
 
+from profiler.kernels.runs import runs_of_true
 from profiler.model import BoolArray, FloatArray
 from profiler.output.figures import page
 from profiler.output.figures.course import Course, Trace, void_runs
@@ -169,12 +170,7 @@ def edge_runs(seen: BoolArray, known: BoolArray, *, want: bool) -> list[slice]:
     """Runs of samples whose joining edge is seen throughout, or not."""
     both = seen[:-1] & seen[1:]
     pick = (both if want else ~both) & known[:-1] & known[1:]
-    edges = np.flatnonzero(
-        np.diff(np.concatenate([[False], pick, [False]]).astype(int))
-    )
-    return [
-        slice(int(a), int(b) + 1) for a, b in zip(edges[::2], edges[1::2], strict=True)
-    ]
+    return [slice(int(a), int(b) + 1) for a, b in zip(*runs_of_true(pick), strict=True)]
 
 
 def _joined(values: FloatArray, runs: list[slice]) -> FloatArray:

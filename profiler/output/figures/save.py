@@ -12,7 +12,7 @@ from matplotlib.figure import Figure
 from profiler.errors import InputError
 from profiler.output.figures.page import PNG_DPI
 from profiler.output.figures.png import png_bytes
-from profiler.output.files import write_whole
+from profiler.output.files import FIGURE_SUFFIXES, write_whole
 
 #: What keeps the ids in an SVG the same from run to run.
 SALT: Final = "overbrow"
@@ -61,7 +61,7 @@ def save_figure(figure: Figure, path: str | Path, *, dpi: float = PNG_DPI) -> No
     """
     target = Path(path)
     suffix = target.suffix.lower()
-    if suffix not in _METADATA:
+    if suffix not in FIGURE_SUFFIXES:
         msg = f'"{target.name}" is no figure file. End the name in .png, .svg or .pdf.'
         raise InputError(msg)
     write_whole(target, lambda beside: _write(figure, beside, suffix, dpi))

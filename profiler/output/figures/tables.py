@@ -22,8 +22,6 @@ TABLE_DISC_IN: Final = 0.122
 TABLE_RING: Final = 0.9
 #: Left edge of the discs from the table's own [in].
 DISC_END_IN: Final = 0.13
-#: Middle of small letters above their baseline [1 of their size].
-MIDDLE: Final = 0.36
 #: Left edges of the table's columns from its own [in]; numbers end at theirs.
 DISTANCE_END_IN: Final = 0.78
 GROUND_IN: Final = 0.92
@@ -158,7 +156,7 @@ def draw_table(
     for mark in marks:
         y -= ROW_IN
         _row(figure, y, mark_texts(mark, scale), page.EDGE)
-        middle = y + page.SMALL / page.PT_PER_IN * MIDDLE
+        middle = y + page.SMALL / page.PT_PER_IN * page.LETTER_MIDDLE
         x = area.left + DISC_END_IN
         draw_disc(figure, x, middle, mark, size_in=TABLE_DISC_IN, ring=TABLE_RING)
     if left_out:

@@ -20,8 +20,7 @@ ROOM: Final = 0.12
 #: Most ticks of heights and of distances [1].
 MOST_HEIGHTS: Final = 4
 MOST_DISTANCES: Final = 2
-#: Distance between two lines of words, and to the drawing's head [in].
-LINE_IN: Final = 0.15
+#: Distance from the words to the drawing's head [in].
 HEAD_GAP_IN: Final = 0.25
 #: Ground is shown so far below the line [1 of the line's own range and margin].
 DEPTH_TIMES: Final = 2.0
@@ -65,7 +64,7 @@ def draw_view(
     page.write(figure, side.left, top, "view from A to B", bold=True)
     y = top - page.BASELINE_IN
     for text in view_lines(course, scale):
-        y -= LINE_IN
+        y -= page.SMALL_LINE_IN
         artist = page.write(figure, side.left, y, text, size=page.SMALL)
         page.fit(figure, artist, side.width, least_pt=page.FINE)
     if course.line.decisive is None:
