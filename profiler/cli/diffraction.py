@@ -70,6 +70,7 @@ def diffraction_command(**options: Any) -> None:
 
     No link budget, rain or multipath statistics: geometry and diffraction only.
     """
+    # the radio room and its scipy, which help does not need
     from profiler.output.loss import loss_record, loss_words
     from profiler.radio.losses import path_losses
 

@@ -38,6 +38,7 @@ def inspect_command(
     FILE is an elevation file, a folder of them or a quoted pattern such as
     'tiles/*.tif'. Every post is read.
     """
+    # help needs none of these
     from profiler.output.files import check_target, write_text
     from profiler.output.inspection import (
         inspection_text,
@@ -87,6 +88,7 @@ def _progress(what: str) -> "Iterator[OnProgress]":
 
 
 def _new_bar(what: str, total: int) -> "Progress":
+    # only long work shows a bar
     from rich.console import Console
     from rich.progress import Progress
 

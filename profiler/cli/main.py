@@ -63,7 +63,7 @@ class LazyGroup(click.Group):
         """The command that is meant; an unknown one is refused with the nearest."""
         name = args[0]
         if name not in COMMANDS and not name.startswith("-"):
-            import difflib
+            import difflib  # only a slip needs it
 
             near = difflib.get_close_matches(name, COMMANDS, n=1)
             hint = f"Nearest: {near[0]}." if near else f"Known: {', '.join(COMMANDS)}."

@@ -113,6 +113,7 @@ def masts_command(**options: Any) -> None:
     A height given with --from-height or --to-height is kept, and the least one at the
     other end is named; equal heights, the cheapest pair and the whole trade-off always.
     """
+    # the radio room and its scipy, which help does not need
     from profiler.output.masts_record import masts_record
     from profiler.output.masts_words import masts_words
     from profiler.radio.assess import rule_warnings

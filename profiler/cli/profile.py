@@ -40,6 +40,7 @@ from profiler.output.exchange import geojson_text
 from profiler.output.files import FIGURE_SUFFIXES, write_text
 from profiler.output.record import record_text
 from profiler.output.words import words
+from profiler.terrain import Terrain
 
 if TYPE_CHECKING:
     from profiler.radio.answer import Rule
@@ -116,14 +117,7 @@ def path_answer(
     if options.get("check_points") is not None:
         writer_for(Path(options["check_points"]))
     places = Places(options)
-    if not options["dem"]:
-        msg = (
-            "No elevation file. Give one with --dem; it must cover "
-            f"{box_text(places)} (docs/elevation-data.md says where data comes from)."
-        )
-        raise click.UsageError(msg)
-    terrain = terrain_from(options)
-    spare_elevation_files(options, terrain)
+    terrain = _terrain_for(options, places)
     eye, target = (places.station(role, terrain) for role in ("from", "to"))
     check_ends(terrain, eye, target, in_degrees=options["crs"] is None)
     cover = cover_of(options)
@@ -146,6 +140,19 @@ def path_answer(
     if cover is None or not years:
         return answer_in(0)
     return look_ahead(answer_in, metres_per_year=growth_m, years=years)
+
+
+def _terrain_for(options: Options, places: Places) -> Terrain:
+    """The elevation model, refused when none is named or a result would replace it."""
+    if not options["dem"]:
+        msg = (
+            "No elevation file. Give one with --dem; it must cover "
+            f"{box_text(places)} (docs/elevation-data.md says where data comes from)."
+        )
+        raise click.UsageError(msg)
+    terrain = terrain_from(options)
+    spare_elevation_files(options, terrain)
+    return terrain
 
 
 def check_figure_name(name: str | None) -> None:

@@ -6,19 +6,23 @@ from pathlib import Path
 from typing import TYPE_CHECKING, Any
 
 import click
+import numpy as np
 
+from profiler.cli.cover_options import check_growth, cover_from
 from profiler.cli.points import EastingNorthing, LatLon, SiteName, parse_point
 from profiler.cli.quantities import ke_looks_like_kr
 from profiler.constants import EYE_M, HALF_TURN_DEG, KE_RADIO, SURVEY_GAP_M, TURN_DEG
+from profiler.earth import crs_from_user
 from profiler.errors import InputError
 from profiler.model import Air, Point, Station
 from profiler.output.files import check_target
 from profiler.output.numbers import box
+from profiler.shapes import Site, find_site, read_site_file
+from profiler.sight.cover_sources import CoverAlong, aged
 from profiler.terrain import Terrain, open_terrain
 
 if TYPE_CHECKING:
     from profiler.radio.answer import Rule
-    from profiler.sight.cover_sources import CoverAlong
 
 #: Room added around a question when the ground it needs is named [deg]; our choice.
 BOX_ROOM_DEG = 0.01
@@ -59,7 +63,7 @@ def air_from(options: Options) -> Air:
     return Air(ke=ke, kr=kr, n_gradient_per_km=options["n_gradient"])
 
 
-def cover_of(options: Options) -> "CoverAlong | None":
+def cover_of(options: Options) -> CoverAlong | None:
     """Trees and buildings as they stand today; None without any.
 
     Raises
@@ -70,21 +74,15 @@ def cover_of(options: Options) -> "CoverAlong | None":
     stated = ("canopy", "growth", "years")
     if not options["cover"] and all(options[name] is None for name in stated):
         return None
-    from profiler.cli.cover_options import check_growth, cover_from
-
     has_cover = options["canopy"] is not None or bool(options["cover"])
     check_growth(options["growth"], options["years"], has_cover=has_cover)
     return cover_from(canopy_m=options["canopy"], files=options["cover"])
 
 
-def cover_in(
-    cover: "CoverAlong | None", growth_m: float, year: int
-) -> "CoverAlong | None":
+def cover_in(cover: CoverAlong | None, growth_m: float, year: int) -> CoverAlong | None:
     """The cover some years from today."""
     if cover is None or year == 0:
         return cover
-    from profiler.sight.cover_sources import aged
-
     return aged(cover, metres_per_year=growth_m, years=year)
 
 
@@ -148,10 +146,8 @@ class Places:
     def __init__(self, options: Options) -> None:
         """Read the file of sites, once."""
         self._options = options
-        self._sites: Sequence[Any] = ()
+        self._sites: Sequence[Site] = ()
         if options["sites"] is not None:
-            from profiler.shapes import read_site_file
-
             found = read_site_file(options["sites"])
             self._sites = found.sites
             for note in found.notes:
@@ -209,17 +205,11 @@ class Places:
                 "(latitude,longitude), or give the file that names it with --sites."
             )
             raise InputError(msg)
-        from profiler.shapes import find_site
-
         site = find_site(self._sites, value.text)
         return site.point, site.name, site.surveyed_ground_m
 
 
 def _from_grid(value: EastingNorthing, crs_text: str, terrain: Terrain | None) -> Point:
-    import numpy as np
-
-    from profiler.earth import crs_from_user
-
     if crs_text.lower() == "dem":
         if terrain is None:
             msg = "--crs dem needs --dem."

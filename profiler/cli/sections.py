@@ -5,6 +5,8 @@ from typing import Any
 
 import click
 
+from profiler.cli.quantities import bare_k_message
+
 #: What a shell that cut a pair at its blank calls for.
 QUOTES = 'Put the pair in quotes: --from "57.1,-4.2".'
 
@@ -56,8 +58,6 @@ class SectionCommand(click.Command):
         given = list(args)  # click empties the list as it reads
         for arg in given:
             if re.fullmatch(r"--?k(=.*)?", arg):
-                from profiler.cli.quantities import bare_k_message
-
                 raise click.UsageError(bare_k_message(), ctx)
         self._refuse_repeats(ctx, args)
         try:

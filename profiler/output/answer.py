@@ -184,12 +184,8 @@ def look(
         cover=cover,
     )
     values = {f.name: getattr(line, f.name) for f in fields(SightLine)}
-    radio = None
     if frequency_hz is not None:
-        # only a radio path needs that room
-        from profiler.radio.answer import RADIO_CAUTION, radio_answer
-
-        radio = radio_answer(
+        values |= _radio_fields(
             terrain,
             line,
             frequency_hz=frequency_hz,
@@ -197,10 +193,21 @@ def look(
             sea_fraction=sea_fraction,
             polarization=polarization,
         )
-        values["cautions"] = (*line.cautions, RADIO_CAUTION)
-        if radio is not None:
-            values["warnings"] = (*line.warnings, *radio.result.warnings)
-    return Answer(**values, terrain=terrain, radio=radio)
+    return Answer(**values, terrain=terrain)
+
+
+def _radio_fields(terrain: Terrain, line: SightLine, **question: Any) -> dict[str, Any]:
+    """Fields of the answer that a frequency adds or changes."""
+    # only a radio path needs that room
+    from profiler.radio.answer import RADIO_CAUTION, radio_answer
+
+    radio = radio_answer(terrain, line, **question)
+    more = () if radio is None else radio.result.warnings
+    return {
+        "radio": radio,
+        "cautions": (*line.cautions, RADIO_CAUTION),
+        "warnings": (*line.warnings, *more),
+    }
 
 
 def look_ahead(

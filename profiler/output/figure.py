@@ -17,7 +17,7 @@ from profiler.output.figures.course import (
 )
 from profiler.output.figures.foot import caution_lines, draw_foot, footer_lines
 from profiler.output.figures.key import draw_key
-from profiler.output.figures.marks import marks_of
+from profiler.output.figures.marks import Mark, marks_of
 from profiler.output.figures.needs import draw_needed
 from profiler.output.figures.plan import (
     GroundMap,
@@ -120,11 +120,18 @@ def draw_figure(
     else:
         draw_view(figure, course, trace, limits, scale)
     if ground_map is not None:
-        plan = page.area_axes(figure, page.MAP_AREA, "plan")
-        draw_plan(plan, ground_map, marks, line.path.length_m)
-        draw_plan_foot(figure, ground_map, scale)
+        _plan(figure, ground_map, marks, scale)
     draw_foot(figure, footer_lines(course, limits, scale), caution_lines(line))
     return figure
+
+
+def _plan(
+    figure: Figure, ground_map: GroundMap, marks: list[Mark], scale: Scale
+) -> None:
+    """The path on a small map, with what its shading means."""
+    ax = page.area_axes(figure, page.MAP_AREA, "plan")
+    draw_plan(ax, ground_map, marks, scale.length_m)
+    draw_plan_foot(figure, ground_map, scale)
 
 
 def _axis_words(figure: Figure, course: Course, scale: Scale) -> None:

@@ -40,7 +40,6 @@ def masts_record(
     """
     shown = plan.for_given_to or plan.for_given_from or plan.equal
     path = record(line)
-    margins = (None,) * len(plan.criteria) if shown is None else shown.margins_m
     return {
         "schema": MASTS_SCHEMA,
         "equal_agl_m": _end(plan.equal, "from_agl_m"),
@@ -56,20 +55,10 @@ def masts_record(
         },
         "limits": {"from": _limits(plan.near), "to": _limits(plan.far)},
         "governing": None if shown is None else criterion_record(shown.governing),
-        "criteria": [
-            {**criterion_record(c), "margin_m": metres(m)}
-            for c, m in zip(plan.criteria, margins, strict=True)
-        ],
+        "criteria": _criteria(plan, shown),
         "margins_at": None if shown is None else _heights(shown),
         "cheapest": None if plan.cheapest is None else _costed(plan.cheapest),
-        "curve": [
-            {
-                "from_agl_m": metres(near),
-                "to_agl_m": metres(far),
-                "governing": criterion_record(criterion),
-            }
-            for near, far, criterion in plan.curve
-        ],
+        "curve": _curve(plan),
         "rule": rule_record(rule),
         "frequency_hz": frequency_hz,
         **{k: path[k] for k in ("path", "terrain", "from", "to")},
@@ -80,6 +69,26 @@ def masts_record(
         ],
         "software": SOFTWARE,
     }
+
+
+def _criteria(plan: MastPlan, shown: MastPair | None) -> list[Json]:
+    """Every criterion with what it leaves at the pair shown; None without a pair."""
+    margins = (None,) * len(plan.criteria) if shown is None else shown.margins_m
+    return [
+        {**criterion_record(c), "margin_m": metres(m)}
+        for c, m in zip(plan.criteria, margins, strict=True)
+    ]
+
+
+def _curve(plan: MastPlan) -> list[Json]:
+    return [
+        {
+            "from_agl_m": metres(near),
+            "to_agl_m": metres(far),
+            "governing": criterion_record(criterion),
+        }
+        for near, far, criterion in plan.curve
+    ]
 
 
 def _end(pair: MastPair | None, name: str) -> float | None:

@@ -59,14 +59,7 @@ def record(line: SightLine) -> Json:
         "blocked_stretches": [_stretch(s) for s in line.blocked_stretches],
         "target": _target(line.target),
         "needed": _needed(line),
-        "path": {
-            "distance_m": metres(line.path.length_m),
-            "azimuth_deg": deg(line.path.azimuth_deg),
-            "back_azimuth_deg": deg(line.path.back_azimuth_deg),
-            "samples": int(line.profile.dist_m.size),
-            "void_samples": int(np.count_nonzero(np.isnan(line.profile.ground_m))),
-            "void_m": metres(_void_length(line)),
-        },
+        "path": _path(line),
         "angles": {
             "from_elevation_deg": deg(line.from_elevation_deg),
             "to_elevation_deg": deg(line.to_elevation_deg),
@@ -78,12 +71,7 @@ def record(line: SightLine) -> Json:
         "to": _end(line.to),
         "other_ground": _other(line),
         "void": _void(line.void),
-        "settings": {
-            "ignore_near_m": metres(line.ignore_near_m),
-            "void_below_m": metres(line.void_below_m),
-            "sea_level_m": metres(line.profile.sea_level_m),
-            "sea_filled_m": metres(line.profile.sea_filled_m),
-        },
+        "settings": _settings(line),
         **_radio(line),
         **_growth(line),
         "cautions": [note_record(n) for n in line.cautions],
@@ -106,6 +94,26 @@ def json_text(values: Json) -> str:
         Plain values; NaN and infinity are refused, which no record holds.
     """
     return json.dumps(values, indent=1, ensure_ascii=False, allow_nan=False) + "\n"
+
+
+def _path(line: SightLine) -> Json:
+    return {
+        "distance_m": metres(line.path.length_m),
+        "azimuth_deg": deg(line.path.azimuth_deg),
+        "back_azimuth_deg": deg(line.path.back_azimuth_deg),
+        "samples": int(line.profile.dist_m.size),
+        "void_samples": int(np.count_nonzero(np.isnan(line.profile.ground_m))),
+        "void_m": metres(_void_length(line)),
+    }
+
+
+def _settings(line: SightLine) -> Json:
+    return {
+        "ignore_near_m": metres(line.ignore_near_m),
+        "void_below_m": metres(line.void_below_m),
+        "sea_level_m": metres(line.profile.sea_level_m),
+        "sea_filled_m": metres(line.profile.sea_filled_m),
+    }
 
 
 def _void_length(line: SightLine) -> float:

@@ -221,8 +221,7 @@ def _shapes_of(
             continue
         if height_m == 0.0:
             continue
-        remedy = "save it with one"
-        crs = layer.projector(file, remedy=remedy)
+        crs = layer.projector(file, remedy="save it with one")
         kind = _kind(cell(KIND_HEADINGS, i)[1], heading if text else "")
         if "Polygon" in flat:
             outline = outline_of(shape, crs, where=where)
@@ -230,10 +229,7 @@ def _shapes_of(
                 name=name, kind=kind, height_m=height_m, crs=crs, outline=outline
             )
             continue
-        heading, text = cell(tuple(RADIUS_HEADINGS), i)
-        radius_m = DISC_RADIUS_M
-        if text:
-            radius_m = _metres(text, RADIUS_HEADINGS[heading], "radius", where)
+        radius_m = _radius(*cell(tuple(RADIUS_HEADINGS), i), where)
         for centre in _centres(shape, crs, where):
             yield CoverShape(
                 name=name,
@@ -243,6 +239,13 @@ def _shapes_of(
                 centre=centre,
                 radius_m=radius_m,
             )
+
+
+def _radius(heading: str, text: str, where: str) -> float:
+    """Radius of a disc as its cell states it, else the usual one [m]."""
+    if not text:
+        return DISC_RADIUS_M
+    return _metres(text, RADIUS_HEADINGS[heading], "radius", where)
 
 
 def _cells(layer: Layer) -> Callable[[tuple[str, ...], int], tuple[str, str]]:

@@ -5,6 +5,8 @@ from dataclasses import dataclass
 from pathlib import Path
 from typing import Any
 
+import numpy as np
+
 from profiler.errors import InputError
 from profiler.model import Note, Point
 from profiler.shapes.layers import Layer, read_layers
@@ -130,8 +132,6 @@ def _single_point(shape: Any) -> Any:
 
 def _to_wgs84(points: list[Any], layer: Layer, path: Path) -> list[tuple[float, float]]:
     """Latitude and longitude [deg] of points whose x is easting or longitude."""
-    import numpy as np
-
     remedy = "save it with one, or as CSV with the columns name, lat, lon"
     crs = layer.projector(path, remedy=remedy)
     x = np.array([point.x for point in points])
