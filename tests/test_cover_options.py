@@ -7,7 +7,9 @@ import pytest
 
 from profiler.cli.cover_options import check_growth, cover_from
 from profiler.cli.question import cover_in
+from profiler.earth import geodesic_path
 from profiler.errors import InputError
+from profiler.model import Point
 from tests import terrain
 from tests.terrain import CENTRED_CRS
 from tests.test_cover_shapes import box, eastward, on_map
@@ -74,3 +76,18 @@ def test_growth_that_cannot_be_is_refused(
 def test_growth_without_trees_is_refused() -> None:
     with pytest.raises(InputError, match="needs trees to grow"):
         check_growth(0.4, 9.0, has_cover=False)
+
+
+def test_cover_that_misses_the_path_is_pointed_out(tmp_path: Path) -> None:
+    wood = tmp_path / "wood.geojson"
+    wood.write_text(
+        '{"type": "FeatureCollection", "features": [{"type": "Feature", '
+        '"properties": {"height_m": 15}, "geometry": {"type": "Polygon", '
+        '"coordinates": [[[3, 3], [3.1, 3], [3.1, 3.1], [3, 3]]]}}]}'
+    )
+    cover = cover_from(files=[str(wood)])
+    assert cover is not None
+    start, end = Point(lat_deg=48.2, lon_deg=-21.5), Point(lat_deg=48.3, lon_deg=-21.2)
+    found = cover(geodesic_path(start, end))
+    assert found.spans == ()
+    assert [note.code for note in found.notes] == ["cover-off-path"]

@@ -126,6 +126,17 @@ def test_a_height_above_the_limit_by_less_than_a_step_is_not_offered() -> None:
     ).for_given_to
 
 
+def test_a_flat_trade_off_with_centimetre_steps_is_settled() -> None:
+    # costs that make many pairs equally cheap over a smooth hull once ran out of trials
+    asks: list[Ask] = [(4 / 3, 0.0, 15.0)]
+    near = MastLimits(most_m=80.0, cost_per_m=5.0)
+    plan = plan_masts(
+        bench_of(smooth(), asks), near=near, far=MastLimits(cost_per_m=0.3)
+    )
+    assert plan.cheapest is not None
+    assert min(plan.cheapest.margins_m) >= -1e-6
+
+
 def test_equal_heights_stand_in_the_sections_of_both_ends() -> None:
     near, far = MastLimits(section_m=5.0), MastLimits(section_m=4.0)
     equal = plan_masts(bench_of(smooth()), near=near, far=far).equal

@@ -73,7 +73,7 @@ def test_a_criterion_is_read_in_any_order(text: str, criterion: Criterion) -> No
         ("ke=1 f1=-0.1", "between 0 and 3, not -0.1"),
         ("ke=1 f1=4", "between 0 and 3, not 4"),
         ("ke=1 f1=", "A number is missing"),
-        ("ke=1 f1=0.6 extra=-3m", "extra must be 0 m or more, not -3"),
+        ("ke=1 f1=0.6 extra=-3m", "extra must be between 0 and 1000 m, not -3"),
         ("ke=1 f1=0.6 extra=3yd", "is not a unit known here"),
         ("ke=1 f1=60%", "is not a number"),
     ],

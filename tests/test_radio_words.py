@@ -393,3 +393,21 @@ def test_ends_exchanged_leave_the_same_margins() -> None:
         assert one["margin_m"] == pytest.approx(two["margin_m"], abs=0.0011)
         assert one["at"]["lat_deg"] == pytest.approx(two["at"]["lat_deg"], abs=1e-7)
     assert there["obstruction"]["kind"] == back["obstruction"]["kind"]
+
+
+def test_a_met_rule_is_told_at_the_tightest_place_not_at_a_masts_foot() -> None:
+    hilltop = (
+        *("--dem", str(UPLAND), "--sites", str(UPLAND.parent / "sites.csv")),
+        *("--from", "Thrane Pike", "--from-height", "12m"),
+        *("--to", "Skarvel", "--to-height", "25m"),
+        *("--frequency", "6GHz", "--rule-set", "plain-0.6"),
+    )
+    values = record_of(*hilltop)
+    tightest = values["radio"]["obstacles"][0]
+    first = profile(*hilltop).out.splitlines()[0]
+    assert values["radio"]["criteria"][0]["at"]["distance_m"] < 50.0
+    where = f"{tightest['distance_m'] / 1000.0:.2f} km"
+    assert first.startswith("RULE MET. The line is clear by ")
+    assert where in first
+    assert f"{tightest['f1_share']:.2f} of F1" in first
+    assert first.endswith("0.6 F1 at ke 4/3 holds all along.")

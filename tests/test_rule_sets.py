@@ -82,10 +82,13 @@ BAD: dict[str, tuple[str | bytes, str]] = {
     "date for a number": ("[[criterion]]\nke = 2020-01-01\nf1 = 1", "must be a number"),
     "not a number": ("[[criterion]]\nke = nan\nf1 = 1", "ke must be above 0"),
     "endless": ("[[criterion]]\nke = 1\nf1 = inf", "between 0 and 3, not inf"),
-    "ke of 0": ("[[criterion]]\nke = 0\nf1 = 1", "ke must be above 0, not 0"),
+    "ke of 0": (
+        "[[criterion]]\nke = 0\nf1 = 1",
+        "ke must be above 0 and below 1e6, not 0",
+    ),
     "negative extra": (
         "[[criterion]]\nke = 1\nf1 = 1\nextra_m = -1",
-        "extra must be 0 m or more, not -1",
+        "extra must be between 0 and 1000 m, not -1",
     ),
 }
 

@@ -70,14 +70,18 @@ def test_its_share_is_its_distance_from_the_ray_over_f1(tmp_path: Path) -> None:
     assert found.share == pytest.approx(apart / f1, abs=1e-4)
 
 
-def test_ground_above_the_ray_counts_by_its_offset_alone(tmp_path: Path) -> None:
+def test_a_wall_counts_by_what_of_it_is_nearest_to_the_ray(tmp_path: Path) -> None:
     ground = opened(tmp_path, crag(20.0, height_m=90.0))
-    found = side_terrain(ground, line_over(ground), wavelength_m=WAVE_M)
+    line = line_over(ground)
+    found = side_terrain(ground, line, wavelength_m=WAVE_M)
     assert found is not None
-    assert found.ground_m > 60.0
+    ray_m = np.interp(found.distance_m, line.profile.dist_m, line.sight_m)
+    below = max(ray_m - found.ground_m, 0.0)
     d1, d2 = found.distance_m, REACH_M - found.distance_m
     f1 = np.sqrt(WAVE_M * d1 * d2 / REACH_M)
-    assert found.share == pytest.approx(found.offset_m / f1, abs=1e-9)
+    assert found.share == pytest.approx(np.hypot(found.offset_m, below) / f1, abs=1e-6)
+    # the crag begins 14 m beside the path and is 90 m high over a ray of 60 m
+    assert found.offset_m < 16.0
 
 
 def test_level_ground_is_tightest_under_the_path(tmp_path: Path) -> None:

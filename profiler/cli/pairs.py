@@ -57,7 +57,13 @@ def two_angles(plain: str) -> tuple[Angle, Angle] | None:
 
 
 def refuse_pair(plain: str) -> NoReturn:
-    """Refuse a text that was meant as a point, and show the forms that are read."""
+    """Refuse a text that was meant as a point, and show the forms that are read.
+
+    Raises
+    ------
+    InputError
+        Always.
+    """
     msg = (
         f'Cannot read {echo(plain)} as a point; write "57.1,-4.2" or '
         '"48 12 33.1 N, 21 30 12.4 W".'
@@ -66,7 +72,13 @@ def refuse_pair(plain: str) -> NoReturn:
 
 
 def refuse_decimal_commas(plain: str) -> None:
-    """Refuse a pair of numbers written with decimal commas, showing it with points."""
+    """Refuse a pair of numbers written with decimal commas, showing it with points.
+
+    Raises
+    ------
+    InputError
+        If the numbers have decimal commas.
+    """
     numbers = _NUMBER.findall(plain)
     commas = len(_COMMA_AS_POINT.findall(plain))
     if four := _FOUR_BY_COMMAS.fullmatch(plain):

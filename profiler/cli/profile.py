@@ -104,6 +104,16 @@ def path_answer(
 ) -> Answer:
     """The answer for the path that the options name, in one state of the air.
 
+    Parameters
+    ----------
+    options : mapping
+        Of the command, by parameter name.
+    air : Air
+    frequency_hz : float or None [Hz]
+        None: light.
+    rule : RuleSet, sequence of Criterion, str, Path or None
+        Clearance rule of a radio path.
+
     Raises
     ------
     click.UsageError

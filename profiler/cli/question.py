@@ -80,7 +80,17 @@ def cover_of(options: Options) -> CoverAlong | None:
 
 
 def cover_in(cover: CoverAlong | None, growth_m: float, year: int) -> CoverAlong | None:
-    """The cover some years from today."""
+    """The cover some years from today.
+
+    Parameters
+    ----------
+    cover : function or None
+        From `cover_of`.
+    growth_m : float [m]
+        Growth of trees a year.
+    year : int
+        Years from today.
+    """
     if cover is None or year == 0:
         return cover
     return aged(cover, metres_per_year=growth_m, years=year)

@@ -77,9 +77,14 @@ def _rule(values: Json, show: Show) -> list[str]:
         lines.append(f"{criterion_text(criterion)}{told}")
     at = values["margins_at"]
     if at is not None:
-        near, far = (show.height(at[k]) for k in ("from_agl_m", "to_agl_m"))
+        near, far = (_up(show, at[k]) for k in ("from_agl_m", "to_agl_m"))
         lines.append(f"at {near} and {far} above ground")
     return lines
+
+
+def _up(show: Show, agl_m: float) -> str:
+    """A height that must suffice as printed."""
+    return show.height(agl_m, rounding=UP)
 
 
 def _given(values: Json, show: Show) -> list[tuple[str, str]]:
@@ -91,7 +96,7 @@ def _given(values: Json, show: Show) -> list[tuple[str, str]]:
     ):
         given = values["given"][f"{other}_agl_m"]
         if given is not None:
-            held = f"for the given {other_name} at {show.given(given)}"
+            held = f"with {other_name} at {show.given(given)}"
             rows.append(("least", _least(values, role, mast, held, show)))
     return rows
 
@@ -102,7 +107,7 @@ def _least(values: Json, role: str, mast: str, held: str, show: Show) -> str:
     if least is not None:
         return f"{capital(mast)} at {show.height(least, rounding=UP)} {held}"
     most = show.given(values["limits"][role]["most_m"])
-    none = f"no height up to {most} at {capital(mast)} does {held}"
+    none = f"no height up to {most} at {mast} does {held}"
     beyond = values["beyond"][f"{role}_agl_m"]
     if beyond is None:
         return none
@@ -114,7 +119,7 @@ def _cheapest(values: Json, show: Show) -> list[tuple[str, str]]:
     pair = values["cheapest"]
     if pair is None:
         return [("cheapest", "no pair within the limits meets the rule")]
-    near, far = (show.height(pair[k]) for k in ("from_agl_m", "to_agl_m"))
+    near, far = (_up(show, pair[k]) for k in ("from_agl_m", "to_agl_m"))
     text = (
         f"{capital(eye)} at {near}, {name} at {far}: cost {ratio(pair['cost'])}; "
         f"{criterion_text(pair['governing'])} governs"
@@ -130,7 +135,7 @@ def _curve(values: Json, show: Show) -> list[str]:
     curve = values["curve"]
     step = max(1, (len(curve) - 1) // (TOLD - 1))
     return [
-        f"{show.height(p['from_agl_m'])} and {show.height(p['to_agl_m'])}   "
+        f"{_up(show, p['from_agl_m'])} and {_up(show, p['to_agl_m'])}   "
         f"{criterion_text(p['governing'])}"
         for p in curve[::step]
     ]

@@ -114,7 +114,16 @@ def _decimals(value: float) -> int:
 
 
 def rounded_text(value: float, decimals: int, *, rounding: str = NEAREST) -> str:
-    """A number with so many decimals, rounded to the nearest, up or down; no "-0"."""
+    """A number with so many decimals, rounded to the nearest, up or down; no "-0".
+
+    Parameters
+    ----------
+    value : float
+        In any unit.
+    decimals : int
+    rounding : str
+        `NEAREST`, `UP` or `DOWN`.
+    """
     scale = 10.0**decimals
     # digits past the record's own are no reason to go a whole step further
     steps = round(value * scale, RECORD_DIGITS)
@@ -138,7 +147,14 @@ def longitude(value_deg: float, decimals: int = DEG_DECIMALS) -> str:
 
 
 def box(south: float, west: float, north: float, east: float, *, decimals: int) -> str:
-    """A box of latitude and longitude [deg]; east may run past 180."""
+    """A box of latitude and longitude [deg]; east may run past 180.
+
+    Parameters
+    ----------
+    south, west, north, east : float [deg]
+    decimals : int
+        Of every latitude and longitude.
+    """
     west, east = (
         lon if abs(lon) <= HALF_TURN_DEG else within_half_turn(lon)
         for lon in (west, east)
@@ -172,6 +188,14 @@ def count(value: int) -> str:
 
 
 def ratio(value: float, decimals: int = 3, *, rounding: str = NEAREST) -> str:
-    """A ratio with at most so many decimals, no trailing zeros."""
+    """A ratio with at most so many decimals, no trailing zeros.
+
+    Parameters
+    ----------
+    value : float [1]
+    decimals : int
+    rounding : str
+        `NEAREST`, `UP` or `DOWN`.
+    """
     text = rounded_text(value, decimals, rounding=rounding)
     return text.rstrip("0").rstrip(".") if "." in text else text

@@ -120,7 +120,9 @@ def _with_place(demand: Demand, dist_m: float, height_m: float) -> Demand:
     at = int(np.searchsorted(reach.dist_m, dist_m))
     dist = np.insert(reach.dist_m, at, dist_m)
     height = np.insert(reach.height_m, at, height_m)
-    return demand._replace(reach=upper_hull(dist, height, demand.kappa_per_m))
+    # a place that a trial found short must stay, however little it was short by
+    hull = upper_hull(dist, height, demand.kappa_per_m, same_m=0.0)
+    return demand._replace(reach=hull)
 
 
 def _ray_over(length_m: float, eye_m: float, demand: Demand, *, near: bool) -> float:

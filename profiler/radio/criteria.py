@@ -10,6 +10,11 @@ from profiler.model import Note
 #: Largest share of the first Fresnel zone that a rule may ask for [1]; our choice:
 #: published rules ask for 1 at most, reflective paths for less than 3 zones.
 MOST_F1 = 3.0
+#: Most metres that a rule may add [m]; our choice: taller than any tree or building.
+MOST_EXTRA_M = 1000.0
+#: Largest ke of a criterion [1]; our choice: from there on the earth is flat to a
+#: millimetre over any path.
+MOST_KE = 1e6
 #: Difference under which two factors are the same [1]; rounding of a fraction.
 SAME_KE = 1e-12
 #: Turn of the effective earth over a path from which on no line exists [rad].
@@ -29,8 +34,8 @@ class Criterion:
 
     def __post_init__(self) -> None:
         """Refuse what is no criterion."""
-        if not (math.isfinite(self.ke) and self.ke > 0.0):
-            msg = f"A criterion's ke must be above 0, not {self.ke:g}."
+        if not 0.0 < self.ke <= MOST_KE:
+            msg = f"A criterion's ke must be above 0 and below 1e6, not {self.ke:g}."
             raise InputError(msg)
         if not 0.0 <= self.f1_fraction <= MOST_F1:
             msg = (
@@ -38,8 +43,11 @@ class Criterion:
                 f"{self.f1_fraction:g}."
             )
             raise InputError(msg)
-        if not (math.isfinite(self.extra_m) and self.extra_m >= 0.0):
-            msg = f"A criterion's extra must be 0 m or more, not {self.extra_m:g} m."
+        if not 0.0 <= self.extra_m <= MOST_EXTRA_M:
+            msg = (
+                f"A criterion's extra must be between 0 and {MOST_EXTRA_M:g} m, not "
+                f"{self.extra_m:g} m."
+            )
             raise InputError(msg)
 
     @property

@@ -49,10 +49,16 @@ def true_shape(
     return x, y
 
 
-def upper_hull(dist_m: FloatArray, height_m: FloatArray, kappa_per_m: float) -> Reach:
+def upper_hull(
+    dist_m: FloatArray,
+    height_m: FloatArray,
+    kappa_per_m: float,
+    *,
+    same_m: float = SAME_M,
+) -> Reach:
     """The places on the upper convex hull, in order of distance.
 
-    Places that stand less than `SAME_M` above a chord of the hull, and less than a like
+    Places that stand less than ``same_m`` above a chord of the hull, and less than a like
     share of it towards the ends, are left out. Every place of the hull is one of those
     given: what clears too little of it is short.
 
@@ -62,10 +68,12 @@ def upper_hull(dist_m: FloatArray, height_m: FloatArray, kappa_per_m: float) -> 
         Places to be cleared, in order of distance, n >= 1.
     kappa_per_m : float [1/m]
         Effective curvature.
+    same_m : float [m]
+        Height by which the hull may be simplified; 0 keeps every corner.
     """
     x, y = true_shape(dist_m, height_m, kappa_per_m)
     span = x[-1] - x[0]
-    same = SAME_M * np.minimum(x - x[0], x[-1] - x) / span if span > 0.0 else x
+    same = same_m * np.minimum(x - x[0], x[-1] - x) / span if span > 0.0 else x
     keep = {0, int(x.size) - 1}
     spans = [(0, int(x.size) - 1)]
     while spans:

@@ -25,8 +25,9 @@ TIMES: Final = 5
 #: Metres at the far end for a metre at the near one from which on a point of the curve
 #: is tried along the whole path [1]; our choice: the cut misses 0.02 mm at most.
 STEEP: Final = 20.0
-#: Trials after which a height is given up [1]; one or two are usual.
-MOST_TRIALS: Final = 40
+#: Trials after which heights are refused as unproven [1]; one or two are usual, a
+#: flat trade-off with centimetre steps has needed over forty.
+MOST_TRIALS: Final = 1000
 
 #: Two heights, or None when none within the limits do.
 Heights = tuple[float, float] | None
@@ -92,7 +93,7 @@ def plan_masts(
     Raises
     ------
     InputError
-        If a given height is below 0 or above its limit.
+        If a given height is below 0 or above its limit, or no heights can be proven.
     """
     near, far = near or MastLimits(), far or MastLimits()
     _check_given(given_from_agl_m, near)
@@ -146,6 +147,11 @@ def _settled(
     The bench asks for too little at worst: heights that it allows and that prove short
     add the place where they are, and the next choice is made. The first that is not
     short is the least.
+
+    Raises
+    ------
+    InputError
+        If no choice is proven in `MOST_TRIALS`; never told as "no heights do".
     """
     for _ in range(MOST_TRIALS):
         chosen = choose(bench)
@@ -156,7 +162,11 @@ def _settled(
         if mended is None:
             return bench, _pair(bench, *chosen, trial, near, far)
         bench = mended
-    return bench, None
+    msg = (
+        f"No heights could be proven in {MOST_TRIALS} trials. Use longer sections or "
+        "closer limits."
+    )
+    raise InputError(msg)
 
 
 def _for_given(

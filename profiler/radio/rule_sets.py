@@ -20,6 +20,8 @@ EXTENDED_F1: Final = 0.3
 TROPICAL_F1: Final = 0.6
 #: The same section: tropical share on paths longer than about this [km].
 TROPICAL_FROM_KM: Final = 30.0
+#: The shortest path for which that ke is drawn [km]; Rec. ITU-R P.530-19 figure 2.
+CURVE_FROM_KM: Final = 20.0
 #: The same section, lower antenna of a diversity pair at median ke: cautious ends of
 #: 0.6 to 0.3 F1 (extended) and 0.3 to 0 F1 (isolated).
 LOWER_EXTENDED_F1: Final = 0.6
@@ -110,7 +112,17 @@ def named_rule_set(name: str, *, length_m: float, isolated: bool) -> RuleSet:
         share, notes = TROPICAL_F1, ()
     median = Criterion(ke=KE_RADIO, f1_fraction=1.0)
     worst = Criterion(ke=worst_month_ke(length_m), f1_fraction=share)
+    if length_m < CURVE_FROM_KM * M_PER_KM:
+        notes = (*notes, _short_path(worst.ke))
     return RuleSet(name=name, source=_P530, criteria=(median, worst), notes=notes)
+
+
+def _short_path(ke: float) -> Note:
+    text = (
+        f"The Recommendation draws the worst month's ke from {CURVE_FROM_KM:g} km on; "
+        f"its equation gives {ke:.3f} for this path. Take that with care."
+    )
+    return Note(code="short-path-ke", text=text)
 
 
 def read_rule_set(path: Path) -> RuleSet:
@@ -134,7 +146,7 @@ def read_rule_set(path: Path) -> RuleSet:
         msg = f'Rule file "{path.name}" is larger than {MOST_BYTES} bytes.'
         raise InputError(msg)
     try:
-        values = tomllib.loads(path.read_text(encoding="utf-8"))
+        values = tomllib.loads(path.read_text(encoding="utf-8-sig"))
     except (ValueError, RecursionError) as error:
         msg = f'Rule file "{path.name}" is no TOML ({error}).'
         raise InputError(msg) from error

@@ -1,7 +1,7 @@
 """Ground beside the path inside the first Fresnel zone: what a centre line misses."""
 
 from dataclasses import dataclass
-from typing import Final
+from typing import Final, NamedTuple
 
 import numpy as np
 
@@ -17,6 +17,14 @@ from profiler.terrain.at_points import ground_at
 ACROSS: Final = 6
 #: Places along the path at most [1]; our choice, 20 m apart on 60 km.
 ALONG: Final = 3000
+#: Places a side of the grids that close in on the tightest [1], how many grids [1],
+#: and by how much each is smaller than the one before [1]; the last step is a 900th of
+#: the first.
+FINE: Final = 13
+ROUNDS: Final = 3
+CLOSER: Final = 5.0
+#: Places this near to an end have no zone worth the name [m].
+END_M: Final = 0.01
 #: A place beside the path counts when its share is below the centre line's by this [1].
 TIGHTER_F1: Final = 0.05
 
@@ -69,34 +77,95 @@ def side_terrain(
     """
     dist = _places_along(line)
     f1 = fresnel_radius_m(dist, length_m=line.path.length_m, wavelength_m=wavelength_m)
-    ray = Line(
-        line.path.length_m,
-        line.from_.amsl_m,
-        line.to.amsl_m,
-        line.earth.kappa_per_m,
-    ).height(dist)
-    offsets = np.arange(-ACROSS, ACROSS + 1) / ACROSS
-    across = offsets[:, None] * f1[None, :]
-    lat, lon = beside_path(
-        line.path, np.broadcast_to(dist, across.shape).ravel(), across.ravel()
-    )
-    ground = ground_at(terrain, lat, lon).reshape(across.shape)
-    share = _shares(ray, ground, across, f1)
-    centre = share[ACROSS]
-    tighter = np.where(share < np.minimum(centre, 1.0) - TIGHTER_F1, share, np.inf)
-    if not np.any(np.isfinite(tighter)):
+    grid = np.arange(-ACROSS, ACROSS + 1) / ACROSS
+    first = _look_beside(terrain, line, dist, grid[:, None] * f1[None, :], wavelength_m)
+    centre = first.share[ACROSS]
+    tighter = first.share < np.minimum(centre, 1.0) - TIGHTER_F1
+    if not np.any(tighter):
         return None
-    k, i = np.unravel_index(int(np.argmin(tighter)), tighter.shape)
-    flat = int(k) * dist.size + int(i)
+    k, i = np.unravel_index(
+        int(np.argmin(np.where(tighter, first.share, np.inf))), tighter.shape
+    )
+    return _refined(
+        terrain,
+        line,
+        (float(dist[i]), float(grid[k] * f1[i])),
+        (float(dist[1] - dist[0]), float(f1[i] / ACROSS)),
+        wavelength_m,
+        float(centre[i]),
+    )
+
+
+class _Beside(NamedTuple):
+    """Ground at a grid of offsets and distances."""
+
+    across_m: FloatArray
+    """(k, n) offset, positive to the right."""
+    lat_deg: FloatArray
+    lon_deg: FloatArray
+    ground_m: FloatArray
+    share: FloatArray
+    """(k, n) distance from the ray as a share of F1; infinite where void."""
+
+
+def _look_beside(
+    terrain: Terrain,
+    line: SightLine,
+    dist_m: FloatArray,
+    across_m: FloatArray,
+    wavelength_m: float,
+) -> _Beside:
+    """Ground and share of F1 at (k, n) offsets from (n,) places on the path."""
+    length = line.path.length_m
+    f1 = fresnel_radius_m(dist_m, length_m=length, wavelength_m=wavelength_m)
+    ends = line.from_.amsl_m, line.to.amsl_m
+    ray = Line(length, *ends, line.earth.kappa_per_m).height(dist_m)
+    everywhere = np.broadcast_to(dist_m, across_m.shape)
+    lat, lon = beside_path(line.path, everywhere.ravel(), across_m.ravel())
+    ground = ground_at(terrain, lat, lon).reshape(across_m.shape)
+    share = _shares(ray, ground, across_m, f1)
+    shape = across_m.shape
+    return _Beside(across_m, lat.reshape(shape), lon.reshape(shape), ground, share)
+
+
+def _refined(
+    terrain: Terrain,
+    line: SightLine,
+    at: tuple[float, float],
+    step: tuple[float, float],
+    wavelength_m: float,
+    centre_share: float,
+) -> SidePlace:
+    """The tightest place around a found one, on grids that close in on it.
+
+    Parameters
+    ----------
+    at : (float, float) [m]
+        Distance along the path and offset, positive to the right.
+    step : (float, float) [m]
+        Steps of the grid on which it was found.
+    """
+    best, size = at, step
+    unit = np.linspace(-1.0, 1.0, FINE)
+    for _ in range(ROUNDS):
+        inside = np.clip(best[0] + unit * size[0], END_M, line.path.length_m - END_M)
+        across = best[1] + unit * size[1]
+        # the same side throughout: the centre line is another matter
+        across = across[np.sign(across) == np.sign(at[1])]
+        grid = np.broadcast_to(across[:, None], (across.size, inside.size))
+        found = _look_beside(terrain, line, inside, grid, wavelength_m)
+        k, i = np.unravel_index(int(np.argmin(found.share)), found.share.shape)
+        best = float(inside[i]), float(across[k])
+        size = size[0] / CLOSER, size[1] / CLOSER
     return SidePlace(
-        distance_m=float(dist[i]),
-        offset_m=abs(float(across[k, i])),
-        side="right" if across[k, i] > 0.0 else "left",
-        lat_deg=float(lat[flat]),
-        lon_deg=(float(lon[flat]) + 180.0) % 360.0 - 180.0,
-        ground_m=float(ground[k, i]),
-        share=float(share[k, i]),
-        centre_share=float(centre[i]),
+        distance_m=best[0],
+        offset_m=abs(best[1]),
+        side="right" if best[1] > 0.0 else "left",
+        lat_deg=float(found.lat_deg[k, i]),
+        lon_deg=(float(found.lon_deg[k, i]) + 180.0) % 360.0 - 180.0,
+        ground_m=float(found.ground_m[k, i]),
+        share=float(found.share[k, i]),
+        centre_share=centre_share,
     )
 
 
@@ -116,6 +185,7 @@ def _shares(
     below = ray_m[None, :] - ground_m
     with np.errstate(invalid="ignore"):
         apart = np.hypot(across_m, np.maximum(below, 0.0)) / f1_m[None, :]
-    apart[ACROSS] = below[ACROSS] / f1_m
-    apart[np.isnan(apart)] = np.inf
-    return apart
+        under = below / f1_m[None, :]
+    share: FloatArray = np.where(across_m == 0.0, under, apart)
+    share[np.isnan(share)] = np.inf
+    return share

@@ -73,6 +73,8 @@ def cover_along(
     def along(path: GeodesicPath) -> PathCover:
         spans = list(spans_along(shapes, path))
         said = list(notes)
+        if shapes and not spans:
+            said.append(_off_the_path(len(shapes)))
         if canopy_m is not None:
             spans.append(canopy(canopy_m, path.length_m))
         for raster in rasters:
@@ -82,6 +84,15 @@ def cover_along(
         return PathCover(spans=tuple(spans), notes=tuple(said))
 
     return aged(along, metres_per_year=metres_per_year, years=years)
+
+
+def _off_the_path(count: int) -> Note:
+    """A note that a file of cover changes nothing: often a sign of a slip."""
+    text = (
+        f"None of the {count} features of cover lies on the path. Check that its "
+        "coordinates are longitude, latitude and in the CRS that it states."
+    )
+    return Note(code="cover-off-path", text=text)
 
 
 def aged(cover: CoverAlong, *, metres_per_year: float, years: float) -> CoverAlong:

@@ -150,6 +150,11 @@ def inner_roots(a: FloatArray, b: FloatArray, c: FloatArray) -> FloatArray:
 
     Written without the difference of nearly equal numbers, so that nearly linear
     pieces lose nothing.
+
+    Parameters
+    ----------
+    a, b, c : (k,) float64
+        Coefficients, all in the unit of the quadratic's value.
     """
     with np.errstate(divide="ignore", invalid="ignore"):
         root = np.sqrt(b * b - 4.0 * a * c)

@@ -88,6 +88,12 @@ def is_end_run(at: Spots, *, eye_on_ground: bool, aim_on_ground: bool) -> BoolAr
 
     An eye or target lying on the ground touches it there without grazing anything:
     the ground beside it belongs to the station until the margin first falls.
+
+    Parameters
+    ----------
+    at : Spots
+    eye_on_ground, aim_on_ground : bool
+        Which ends lie on bare ground.
     """
     run = np.zeros(at.margin_m.size, dtype=np.bool_)
     falls = np.flatnonzero(np.diff(at.margin_m) < -ROUNDING_M)

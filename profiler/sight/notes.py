@@ -81,7 +81,14 @@ def _longest_zero_run(profile: PathProfile) -> tuple[float, float]:
 def cautions_for(
     profile: PathProfile, path: GeodesicPath, earth: Bending
 ) -> tuple[Note, ...]:
-    """What the answer cannot know, whatever the data."""
+    """What the answer cannot know, whatever the data.
+
+    Parameters
+    ----------
+    profile : PathProfile
+    path : GeodesicPath
+    earth : Bending
+    """
     counted = "Ground only: no trees, buildings or weather."
     if profile.dem_kind is DemKind.SURFACE:
         counted = "Trees and buildings as the surface model has them; no weather."

@@ -73,7 +73,17 @@ def place_at(
 def stretch_of(
     path: GeodesicPath, at: Spots, run: Blocked, *, profile: PathProfile | None = None
 ) -> Stretch:
-    """One blocked stretch with its worst place, and what stands there."""
+    """One blocked stretch with its worst place, and what stands there.
+
+    Parameters
+    ----------
+    path : GeodesicPath
+    at : Spots
+    run : Blocked
+        Its worst place is an index into ``at``.
+    profile : PathProfile or None
+        Tells ground from cover; None: all is ground.
+    """
     worst_at = float(at.dist_m[run.worst])
     span = None
     if profile is not None:

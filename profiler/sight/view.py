@@ -78,6 +78,15 @@ def front_crest_index(seen: Rays, eye_m: float, kappa_per_m: float) -> int | Non
 
     Deep means that the grazing ray over the last seen ground passes more than
     `CREST_DEPTH_M` above ground somewhere in the stretch. None when there is none.
+
+    Parameters
+    ----------
+    seen : Rays
+        In order of distance.
+    eye_m : float [m]
+        Height of the eye.
+    kappa_per_m : float [1/m]
+        Effective curvature.
     """
     visible = is_seen(seen)
     if not np.any(~visible):

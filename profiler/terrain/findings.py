@@ -117,7 +117,19 @@ def declarations(
     stated: str | None,
     kind: DemKind,
 ) -> Iterator[Declare]:
-    """What a person must say before the file can be used fully."""
+    """What a person must say before the file can be used fully.
+
+    Parameters
+    ----------
+    crs : Projector or None
+        None when places cannot be computed.
+    problem : str or None
+        Why they cannot.
+    unit_text, stated : str or None
+        Unit of heights in the file's own words, and as m, ft or us-ft.
+    kind : DemKind
+        What surface the file says it shows.
+    """
     if crs is None:
         yield Declare("--dem-crs EPSG:n", problem or "")
     if stated is None:

@@ -13,7 +13,8 @@ from profiler.errors import DemError
 from profiler.model.arrays import BoolArray, FloatArray
 from profiler.terrain.dem import Terrain
 from profiler.terrain.lattice import Lattice, Tile
-from profiler.terrain.raster import BLOCK_CACHE_BYTES, to_metres
+from profiler.terrain.posts import to_metres
+from profiler.terrain.raster import BLOCK_CACHE_BYTES
 
 #: Most posts read along either side of a grid [1]; our choice: two for each cell of a
 #: small map.

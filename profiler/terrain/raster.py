@@ -1,4 +1,4 @@
-"""One elevation file: what its header says, and its posts in metres.
+"""One elevation file: opened, and what its header says.
 
 A post is the centre of a pixel, whatever the file's registration tag: the raster
 library has already moved the origin of a point-registered file by half a pixel, so
@@ -11,31 +11,22 @@ from collections.abc import Iterator
 from contextlib import contextmanager
 from dataclasses import dataclass
 from pathlib import Path
-from typing import Any, Final, NamedTuple, Protocol
+from typing import Final, NamedTuple
 
 import numpy as np
 import rasterio
-from numpy.typing import NDArray
 from rasterio.enums import ColorInterp, MaskFlags
 from rasterio.errors import NotGeoreferencedWarning, RasterioError
-from rasterio.windows import Window
 
-from profiler.constants import HEIGHT_UNIT_M
 from profiler.earth.projection import Projector, crs_from_user, projector
 from profiler.errors import DemError
-from profiler.model.arrays import BoolArray, FloatArray
+from profiler.model.arrays import FloatArray
 from profiler.terrain.units import unit_from_text
 
-#: Values that stand for "no data" without saying so (common practice) [raw].
-SENTINELS: Final = (-32768.0, -32767.0, -9999.0, -99999.0, -999999.0)
-#: Magnitude above which a raw value is a filler such as 3.4e38 [raw].
-FILLER_ABOVE: Final = 1e30
-#: Memory for decoded blocks of all files [bytes]; our choice: a path's tiles fit in.
+#: Memory for decoded blocks of all files [bytes]; our choice: small on any machine.
 BLOCK_CACHE_BYTES: Final = 64 * 2**20
 #: Posts along a side of the thinned grid whose range a message names [1]; our choice.
 THINNED_POSTS: Final = 512
-
-RawArray = NDArray[Any]
 
 
 class Affine(NamedTuple):
@@ -137,14 +128,15 @@ def open_grid(path: Path) -> Iterator["rasterio.DatasetReader"]:
             msg = f'The name "{shown}" is not UTF-8. Rename the file.'
             raise DemError(msg) from error
         except RasterioError as error:
+            cause = short_cause(error)
             msg = (
-                f'"{path.name}" cannot be read as an elevation grid ({_short(error)}). '
+                f'"{path.name}" cannot be read as an elevation grid ({cause}). '
                 "Give a GeoTIFF, VRT, HGT or ASCII grid."
             )
             raise DemError(msg) from error
 
 
-def _short(error: BaseException) -> str:
+def short_cause(error: BaseException) -> str:
     """First sentence of a library's message or its cause, without the file's folder."""
     error = error.__cause__ or error
     text = str(error).strip().splitlines()[0] if str(error).strip() else "damaged"
@@ -180,7 +172,17 @@ def _header_of(
 def raster_of(
     dataset: "rasterio.DatasetReader", path: Path, *, crs: Projector, unit: str | None
 ) -> Raster:
-    """Header of an open elevation grid whose CRS is known; nothing is refused here."""
+    """Header of an open elevation grid whose CRS is known; nothing is refused here.
+
+    Parameters
+    ----------
+    dataset : DatasetReader
+        The open file.
+    path : Path
+    crs : Projector
+    unit : str or None
+        Declared unit of heights (m, ft, us-ft), which wins over the file's.
+    """
     stated = unit_from_text(dataset.units[0]) or crs.vertical_unit
     return Raster(
         path=path,
@@ -245,6 +247,15 @@ def crs_of(
 ) -> Projector:
     """CRS of an open file, else the declared one.
 
+    Parameters
+    ----------
+    dataset : DatasetReader
+        The open file.
+    name : str
+        Its name, for the error message.
+    crs_text : str or None
+        The declared CRS, such as "EPSG:32627".
+
     Raises
     ------
     DemError
@@ -271,113 +282,3 @@ def _height_range(dataset: "rasterio.DatasetReader") -> tuple[float, float]:
     if posts.count() == 0:
         return 0.0, 0.0
     return float(posts.min()), float(posts.max())
-
-
-class Coded(Protocol):
-    """How a file codes its heights; `Raster` is one."""
-
-    @property
-    def path(self) -> Path:
-        """The file."""
-
-    @property
-    def nodata(self) -> float | None:
-        """Raw value that means void."""
-
-    @property
-    def scale(self) -> float:
-        """Height = raw·scale + offset, in ``unit``."""
-
-    @property
-    def offset(self) -> float:
-        """See ``scale``."""
-
-    @property
-    def unit(self) -> str:
-        """Unit of the heights: m, ft or us-ft."""
-
-    @property
-    def has_mask(self) -> bool:
-        """Whether a mask hides posts besides the nodata value."""
-
-
-class Posts(NamedTuple):
-    """A window of posts, in metres."""
-
-    height_m: FloatArray
-    """(rows, cols); NaN where there is none."""
-    filler: BoolArray
-    """(rows, cols); posts that held an untagged filler value."""
-
-
-def read_posts(
-    dataset: "rasterio.DatasetReader",
-    raster: Raster,
-    row: int,
-    col: int,
-    rows: int,
-    cols: int,
-) -> Posts:
-    """A window of posts in metres, NaN where the file has no ground.
-
-    Parameters
-    ----------
-    dataset : DatasetReader
-        The open file of ``raster``.
-    raster : Raster
-        Its header.
-    row, col, rows, cols : int
-        The window; it lies inside the file.
-
-    Raises
-    ------
-    DemError
-        If the blocks cannot be decoded (a truncated or damaged file).
-    """
-    raw, hidden = read_raw(dataset, raster, Window(col, row, cols, rows))
-    return to_metres(raw, raster, hidden)
-
-
-def read_raw(
-    dataset: "rasterio.DatasetReader", coded: Coded, window: Window
-) -> tuple[RawArray, BoolArray | None]:
-    """A window of raw values, and which of them a mask hides.
-
-    Raises
-    ------
-    DemError
-        If the blocks cannot be decoded (a truncated or damaged file).
-    """
-    try:
-        raw = dataset.read(1, window=window)
-        hidden = dataset.read_masks(1, window=window) == 0 if coded.has_mask else None
-    except RasterioError as error:
-        msg = (
-            f'"{coded.path.name}" is damaged or cut short near row {window.row_off}, '
-            f"column {window.col_off} ({_short(error)}). Copy or download it again."
-        )
-        raise DemError(msg) from error
-    return raw, hidden
-
-
-def to_metres(raw: RawArray, coded: Coded, hidden: BoolArray | None) -> Posts:
-    """Raw values to metres: nodata and fillers to NaN, scale, offset and unit."""
-    height = raw.astype(np.float64)
-    with np.errstate(invalid="ignore", over="ignore"):
-        void = ~np.isfinite(height)
-        if coded.nodata is not None and np.isfinite(coded.nodata):
-            void |= height == float(np.asarray(coded.nodata).astype(_wide(raw.dtype)))
-        if hidden is not None:
-            void |= hidden
-        filler = np.abs(height) > FILLER_ABOVE
-        for value in SENTINELS:
-            filler |= height == value
-        filler &= ~void
-        height = (height * coded.scale + coded.offset) * HEIGHT_UNIT_M[coded.unit]
-    height[void | filler] = np.nan
-    return Posts(height, filler)
-
-
-def _wide(dtype: "np.dtype[np.generic]") -> "np.dtype[np.generic]":
-    """Type in which a nodata tag is compared: float32 rounds it, integers do not."""
-    return dtype if dtype == np.float32 else np.dtype(np.float64)

@@ -10,7 +10,7 @@ from rasterio.windows import Window
 
 from profiler.constants import LOWEST_GROUND_M, VOID_BELOW_M
 from profiler.model.arrays import BoolArray, FloatArray
-from profiler.terrain.raster import Coded, RawArray, read_raw, to_metres
+from profiler.terrain.posts import Coded, RawArray, read_raw, to_metres
 
 #: Posts held at once, unless one block of the file is larger [1]; our choice: with
 #: their copies about 50 MB.
@@ -51,7 +51,19 @@ class Tally:
     def add(
         self, raw: RawArray, height_m: FloatArray, filler: BoolArray, at: Window
     ) -> None:
-        """Count one window: raw values, heights (NaN: void) and untagged fillers."""
+        """Count one window: raw values, heights (NaN: void) and untagged fillers.
+
+        Parameters
+        ----------
+        raw : (rows, cols) of the file's own type
+            Raw values.
+        height_m : (rows, cols) float64 [m]
+            NaN where void.
+        filler : (rows, cols) bool
+            Posts that held an untagged filler.
+        at : Window
+            Where the window lies in the file.
+        """
         corner = (int(at.row_off), int(at.col_off))
         void = np.isnan(height_m)
         self.posts += height_m.size

@@ -11,7 +11,8 @@ from profiler.constants import SEAM_STEP_M
 from profiler.errors import DemError
 from profiler.model.arrays import BoolArray, FloatArray, IntArray
 from profiler.terrain.lattice import Lattice, Tile
-from profiler.terrain.raster import BLOCK_CACHE_BYTES, Raster, read_posts, stamp_of
+from profiler.terrain.posts import read_posts
+from profiler.terrain.raster import BLOCK_CACHE_BYTES, Raster, stamp_of
 
 #: Files kept open at once; our choice, below any system's limit.
 MOST_OPEN: Final = 64
@@ -87,6 +88,12 @@ class PostReader:
     ) -> Window:
         """Posts row … row+rows−1, col … col+cols−1 of the lattice, void outside.
 
+        Parameters
+        ----------
+        lattice : Lattice
+        row, col, rows, cols : int
+            First row and column of the window on the lattice, and how many of each.
+
         Raises
         ------
         DemError
@@ -147,7 +154,14 @@ class PostReader:
 
 
 def tiles_within(lattice: Lattice, row: int, col: int, rows: int, cols: int) -> int:
-    """How many tiles (a tile met again after a turn counts twice) reach a window."""
+    """How many tiles (a tile met again after a turn counts twice) reach a window.
+
+    Parameters
+    ----------
+    lattice : Lattice
+    row, col, rows, cols : int
+        First row and column of the window on the lattice, and how many of each.
+    """
     reached = 0
     for tile in lattice.tiles:
         if tile.row < row + rows and row < tile.row + tile.raster.rows:
