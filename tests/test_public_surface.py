@@ -12,8 +12,9 @@ import pytest
 import profiler
 from tests.asking import ROOT
 
-FUNCTIONS = sorted(n for n in profiler.__all__ if inspect.isfunction(vars(profiler)[n]))
-CLASSES = sorted(n for n in profiler.__all__ if inspect.isclass(vars(profiler)[n]))
+PUBLIC = {name: getattr(profiler, name) for name in profiler.__all__}
+FUNCTIONS = sorted(n for n, value in PUBLIC.items() if inspect.isfunction(value))
+CLASSES = sorted(n for n, value in PUBLIC.items() if inspect.isclass(value))
 
 
 def parameters(function: Any) -> list[inspect.Parameter]:
@@ -21,19 +22,23 @@ def parameters(function: Any) -> list[inspect.Parameter]:
 
 
 def test_all_holds_the_sorted_public_names() -> None:
-    public = [
+    loaded = [
         name
         for name, value in vars(profiler).items()
         if not name.startswith("_") and not isinstance(value, ModuleType)
     ]
-    # as the linter sorts: constants, classes, functions
-    kinds = sorted(public, key=lambda n: (not n.isupper(), n[0].islower(), n))
-    assert profiler.__all__ == kinds
+    assert profiler.__all__ == sorted(loaded) == dir(profiler)
+    assert list(profiler._HOMES) == profiler.__all__
+
+
+def test_a_name_that_is_not_public_is_no_attribute() -> None:
+    with pytest.raises(AttributeError, match="no attribute 'sight_height'"):
+        _ = profiler.sight_height
 
 
 @pytest.mark.parametrize("name", FUNCTIONS)
 def test_a_public_function_documents_what_style_asks(name: str) -> None:
-    function = vars(profiler)[name]
+    function = PUBLIC[name]
     text = inspect.getdoc(function) or ""
     first = text.splitlines()[0]
     assert first.endswith(".")
@@ -52,7 +57,7 @@ def test_a_public_function_documents_what_style_asks(name: str) -> None:
 def test_after_two_parameters_the_rest_go_by_keyword(name: str) -> None:
     positional = [
         p
-        for p in parameters(vars(profiler)[name])
+        for p in parameters(PUBLIC[name])
         if p.kind in (p.POSITIONAL_ONLY, p.POSITIONAL_OR_KEYWORD)
     ]
     assert len(positional) <= 3
@@ -61,12 +66,12 @@ def test_after_two_parameters_the_rest_go_by_keyword(name: str) -> None:
 
 @pytest.mark.parametrize("name", CLASSES)
 def test_a_public_class_says_what_it_is(name: str) -> None:
-    assert (vars(profiler)[name].__doc__ or "").strip().split("\n")[0].endswith(".")
+    assert (PUBLIC[name].__doc__ or "").strip().split("\n")[0].endswith(".")
 
 
 @pytest.mark.parametrize("name", ["InputError", "DemError", "OutsideDemError"])
 def test_every_error_is_a_profiler_error(name: str) -> None:
-    assert issubclass(vars(profiler)[name], profiler.ProfilerError)
+    assert issubclass(PUBLIC[name], profiler.ProfilerError)
 
 
 def test_importing_the_package_leaves_the_heavy_libraries_alone() -> None:

@@ -1,5 +1,6 @@
 """The command ``overbrow``: its first screen and its sub-commands."""
 
+import gc
 import io
 import sys
 from importlib import import_module
@@ -96,6 +97,8 @@ def overbrow(ctx: click.Context) -> None:
 
 def run() -> None:
     """Run the command line; the entry point of the installed script."""
+    # a run is short; docs/decisions/0008 says what looking for cycles would cost
+    gc.disable()
     for stream in (sys.stdout, sys.stderr):
         if isinstance(stream, io.TextIOWrapper):
             # a terminal that lacks ° or ′ shows ? there instead of failing

@@ -8,7 +8,6 @@ from typing import TYPE_CHECKING, Any
 import click
 import numpy as np
 
-from profiler.cli.cover_options import check_growth, cover_from
 from profiler.cli.points import EastingNorthing, LatLon, SiteName, parse_point
 from profiler.cli.quantities import ke_looks_like_kr
 from profiler.constants import EYE_M, HALF_TURN_DEG, KE_RADIO, SURVEY_GAP_M, TURN_DEG
@@ -17,12 +16,12 @@ from profiler.errors import InputError
 from profiler.model import Air, Point, Station
 from profiler.output.files import check_target
 from profiler.output.numbers import box
-from profiler.shapes import Site, find_site, read_site_file
 from profiler.sight.cover_sources import CoverAlong, aged
 from profiler.terrain import Terrain, open_terrain
 
 if TYPE_CHECKING:
     from profiler.radio.answer import Rule
+    from profiler.shapes import Site
 
 #: Room added around a question when the ground it needs is named [deg]; our choice.
 BOX_ROOM_DEG = 0.01
@@ -75,6 +74,9 @@ def cover_of(options: Options) -> CoverAlong | None:
     if not options["cover"] and all(options[name] is None for name in stated):
         return None
     has_cover = options["canopy"] is not None or bool(options["cover"])
+    # most questions have no cover and need none of its rooms
+    from profiler.cli.cover_options import check_growth, cover_from
+
     check_growth(options["growth"], options["years"], has_cover=has_cover)
     return cover_from(canopy_m=options["canopy"], files=options["cover"])
 
@@ -158,6 +160,8 @@ class Places:
         self._options = options
         self._sites: Sequence[Site] = ()
         if options["sites"] is not None:
+            from profiler.shapes import read_site_file  # only for a file of places
+
             found = read_site_file(options["sites"])
             self._sites = found.sites
             for note in found.notes:
@@ -215,6 +219,8 @@ class Places:
                 "(latitude,longitude), or give the file that names it with --sites."
             )
             raise InputError(msg)
+        from profiler.shapes import find_site
+
         site = find_site(self._sites, value.text)
         return site.point, site.name, site.surveyed_ground_m
 

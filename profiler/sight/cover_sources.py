@@ -2,6 +2,7 @@
 
 from collections.abc import Callable, Sequence
 from dataclasses import replace
+from typing import TYPE_CHECKING
 
 import numpy as np
 
@@ -16,10 +17,12 @@ from profiler.model import (
     PathCover,
     PathProfile,
 )
-from profiler.shapes import CoverShape, spans_along
 from profiler.sight.cover import canopy, covered, grown
 from profiler.terrain import Terrain, sample_path
 from profiler.terrain.dem import first_and_more
+
+if TYPE_CHECKING:
+    from profiler.shapes import CoverShape
 
 CoverAlong = Callable[[GeodesicPath], PathCover]
 """Finds the cover along a path that is not known beforehand."""
@@ -32,7 +35,7 @@ TALLEST_TREE_M = 120.0
 def cover_along(
     *,
     canopy_m: float | None = None,
-    shapes: Sequence[CoverShape] = (),
+    shapes: "Sequence[CoverShape]" = (),
     rasters: Sequence[Terrain] = (),
     metres_per_year: float = 0.0,
     years: float = 0.0,
@@ -71,7 +74,7 @@ def cover_along(
         _check_cells(raster)
 
     def along(path: GeodesicPath) -> PathCover:
-        spans = list(spans_along(shapes, path))
+        spans = _outlined(shapes, path)
         said = list(notes)
         if shapes and not spans:
             said.append(_off_the_path(len(shapes)))
@@ -84,6 +87,15 @@ def cover_along(
         return PathCover(spans=tuple(spans), notes=tuple(said))
 
     return aged(along, metres_per_year=metres_per_year, years=years)
+
+
+def _outlined(shapes: "Sequence[CoverShape]", path: GeodesicPath) -> list[CoverSpan]:
+    """Spans of outlines and discs along a path."""
+    if not shapes:
+        return []
+    from profiler.shapes import spans_along  # only a file of cover needs that room
+
+    return list(spans_along(shapes, path))
 
 
 def _off_the_path(count: int) -> Note:
