@@ -216,3 +216,17 @@ def test_ground_above_the_printed_height_in_a_void_blocks() -> None:
     assert values["verdict"] == "undetermined"
     above = values["void"]["blocks_above_m"]
     assert record_of(*SEA, "--void-below", str(above))["verdict"] == "clear"
+
+
+def test_seen_stretches_are_the_ground_that_the_eye_sees() -> None:
+    answer = answer_of(*HIDDEN)
+    stretches = answer.record()["seen_stretches"]
+    edges = [edge for s in stretches for edge in (s["start_m"], s["end_m"])]
+    assert edges == sorted(edges)
+    dist, seen = answer.profile.dist_m, answer.ground_seen
+    for s in stretches:
+        within = (dist >= s["start_m"] - 0.001) & (dist <= s["end_m"] + 0.001)
+        assert seen[within].all()
+    # the last ground seen is the place that hides the rest
+    assert answer.horizon is not None
+    assert abs(edges[-1] - answer.horizon.distance_m) < 30.0

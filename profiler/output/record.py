@@ -11,6 +11,7 @@ from typing import Any, Final
 import numpy as np
 
 from profiler.constants import VERSION
+from profiler.kernels.runs import runs_of_true
 from profiler.model import (
     EndReport,
     Note,
@@ -71,6 +72,7 @@ def record(line: SightLine) -> Json:
         "to": _end(line.to),
         "other_ground": _other(line),
         "void": _void(line.void),
+        "seen_stretches": _seen_stretches(line),
         "settings": _settings(line),
         **_radio(line),
         **_growth(line),
@@ -268,6 +270,17 @@ def _void(void: VoidStretch | None) -> Json | None:
 def note_record(note: Note) -> Json:
     """A warning or caution as every record writes it."""
     return {"code": note.code, "text": storable(note.text)}
+
+
+def _seen_stretches(line: SightLine) -> list[Json]:
+    """Runs of ground along the path that the eye sees."""
+    dist = line.profile.dist_m
+    first, end = runs_of_true(line.ground_seen)
+    return [
+        {"start_m": metres(float(dist[a])), "end_m": metres(float(dist[b - 1]))}
+        for a, b in zip(first, end, strict=True)
+        if dist[b - 1] > dist[a]
+    ]
 
 
 def _radio(line: SightLine) -> Json:
