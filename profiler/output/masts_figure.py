@@ -15,7 +15,6 @@ from profiler.output.figures.foot import (
     LINE_MOST,
     WHO,
     draw_foot,
-    side_text,
 )
 from profiler.output.figures.marks import spread
 from profiler.output.figures.masts_key import HAIR, draw_masts_key
@@ -24,7 +23,7 @@ from profiler.output.figures.scale import nice_ticks, tick_texts
 from profiler.output.figures.tables import NAME_MOST, draw_head, short
 from profiler.output.masts_words import MARKED_FROM_M, MASTS_CAUTION, first_masts_line
 from profiler.output.naming import capital, names_of
-from profiler.output.numbers import Show
+from profiler.output.numbers import Show, posts_text
 
 __all__ = ["draw_masts"]
 
@@ -270,8 +269,8 @@ def _quiet(values: Json) -> list[str]:
     if files:
         more = f" and {len(files) - 1} more" if len(files) > 1 else ""
         digest = f" {files[0]['sha256'][:HASH_SHOWN]}" if files[0]["sha256"] else ""
-        posts = " x ".join(side_text(side) for side in files[0]["cell_m"])
-        ground = f"{files[0]['name']}{digest}{more}, posts {posts} m"
+        posts = posts_text([f["cell_m"] for f in files])
+        ground = f"{files[0]['name']}{digest}{more}, {posts}"
     way = values["terrain"]["interpolation"]
     lines = [f"Ground: {short(ground, LINE_MOST)}, {way}.  {WHO}"]
     warnings = [note["text"] for note in values["warnings"]]

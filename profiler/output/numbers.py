@@ -1,6 +1,7 @@
 """Numbers as people read them, in metres and kilometres or feet and miles."""
 
 import math
+from collections.abc import Sequence
 from dataclasses import dataclass
 from typing import Final
 
@@ -27,6 +28,11 @@ UP: Final = "up"
 DOWN: Final = "down"
 #: Digits after the last shown one that still count when rounding up or down [1].
 RECORD_DIGITS: Final = 6
+
+#: Files whose cells differ by less have the same posts [1]; our choice.
+SAME_POSTS: Final = 1.05
+#: Sides of cells from this on are told in whole metres [m]; our choice.
+WHOLE_METRES_FROM: Final = 9.5
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
@@ -199,3 +205,23 @@ def ratio(value: float, decimals: int = 3, *, rounding: str = NEAREST) -> str:
     """
     text = rounded_text(value, decimals, rounding=rounding)
     return text.rstrip("0").rstrip(".") if "." in text else text
+
+
+def posts_text(cells_m: Sequence[Sequence[float]]) -> str:
+    """How far apart posts stand: "posts 5 x 5 to 31 x 21 m".
+
+    Parameters
+    ----------
+    cells_m : sequence of two float [m]
+        Of each file, down a column and along a row; at least one file.
+    """
+    cells = sorted(cells_m, key=max)
+    told = cells[:1]
+    if max(cells[-1]) > SAME_POSTS * max(cells[0]):
+        told.append(cells[-1])
+    sides = " to ".join(" x ".join(_side(side) for side in cell) for cell in told)
+    return f"posts {sides} m"
+
+
+def _side(side_m: float) -> str:
+    return f"{side_m:.0f}" if side_m >= WHOLE_METRES_FROM else ratio(side_m, 1)

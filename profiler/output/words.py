@@ -16,6 +16,7 @@ from profiler.output.numbers import (
     longitude,
     percent,
     place,
+    posts_text,
     ratio,
 )
 from profiler.output.record import record
@@ -29,10 +30,6 @@ LEAD: Final = 13
 WIDTH: Final = 100
 #: Stretches listed before the rest are only counted [1].
 MOST_LISTED: Final = 8
-#: Files whose cells differ by less have the same posts [1]; our choice.
-SAME_POSTS: Final = 1.05
-#: Sides of cells from this on are told in whole metres [m]; our choice.
-WHOLE_METRES_FROM: Final = 9.5
 
 Json = dict[str, Any]
 
@@ -164,16 +161,8 @@ def _files(files: list[Json]) -> str:
     if not files:
         return "no file has any there"
     more = f" and {len(files) - 1} more" if len(files) > 1 else ""
-    cells = sorted((f["cell_m"] for f in files), key=max)
-    told = cells[:1]
-    if max(cells[-1]) > SAME_POSTS * max(cells[0]):
-        told.append(cells[-1])
-    sides = " to ".join(" x ".join(_side(side) for side in cell) for cell in told)
-    return f"{printable(files[0]['name'])}{more}, posts {sides} m"
-
-
-def _side(side_m: float) -> str:
-    return f"{side_m:.0f}" if side_m >= WHOLE_METRES_FROM else ratio(side_m, 1)
+    posts = posts_text([f["cell_m"] for f in files])
+    return f"{printable(files[0]['name'])}{more}, {posts}"
 
 
 def _ends(values: Json, show: Show, assumed: Collection[str]) -> list[str]:

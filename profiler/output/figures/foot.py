@@ -12,14 +12,12 @@ from profiler.output.figures.course import Course
 from profiler.output.figures.ends import Limits
 from profiler.output.figures.scale import Scale, times_text
 from profiler.output.figures.tables import short
-from profiler.output.numbers import ratio
+from profiler.output.numbers import posts_text, ratio
 from profiler.output.told import radio_of
 
 #: Characters of a file's name before it is cut, and of its hash [1].
 FILE_MOST: Final = 48
 HASH_SHOWN: Final = 8
-#: Posts this far apart and more are told in whole metres [m].
-WHOLE_POSTS_M: Final = 9.5
 #: Characters of a line of the footer [1]; the page holds about 190.
 LINE_MOST: Final = 175
 #: What the heights show, as stated.
@@ -38,13 +36,8 @@ def ground_text(files: tuple[SourceFile, ...]) -> str:
     file = files[0]
     more = f" and {len(files) - 1} more" if len(files) > 1 else ""
     digest = f" {file.sha256[:HASH_SHOWN]}" if file.sha256 else ""
-    posts = " x ".join(side_text(side) for side in file.cell_m)
-    return f"{short(file.name, FILE_MOST)}{digest}{more}, posts {posts} m"
-
-
-def side_text(side_m: float) -> str:
-    """A distance between posts: whole metres, or one decimal when it is small."""
-    return f"{side_m:.0f}" if side_m >= WHOLE_POSTS_M else ratio(side_m, 1)
+    posts = posts_text([f.cell_m for f in files])
+    return f"{short(file.name, FILE_MOST)}{digest}{more}, {posts}"
 
 
 def left_out_text(line: SightLine) -> str:
