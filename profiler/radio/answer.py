@@ -52,8 +52,11 @@ def rule_for(rule: Rule, line: SightLine, frequency_hz: float) -> RuleSet:
         if str(rule).lower().endswith(".toml"):
             return read_rule_set(Path(rule))
         return rule_named(str(rule), line, frequency_hz)
-    criteria = tuple(rule)
-    if not all(isinstance(c, Criterion) for c in criteria):
+    given: object = rule
+    if not isinstance(given, Sequence):
+        given = (given,)
+    criteria = tuple(c for c in given if isinstance(c, Criterion))
+    if len(criteria) < len(given):
         msg = "A rule is a name, a file ending in .toml or a list of Criterion."
         raise InputError(msg)
     return RuleSet(name="given", source="as given", criteria=criteria)

@@ -15,11 +15,14 @@ import numpy as np
 from profiler.constants import QUARTER_TURN_DEG
 from profiler.earth.geodesic import geodesic_line, within_half_turn
 from profiler.earth.projection import Projector
-from profiler.errors import DemError, InputError
+from profiler.errors import DemError
 from profiler.model.arrays import FloatArray
 from profiler.model.question import Point
 from profiler.terrain.raster import Affine, Raster
 
+#: The smallest cell taken for one on the ground [m]; our choice: finer than any
+#: survey, far above the rounding of coordinates.
+LEAST_CELL_M: Final = 1e-3
 #: Tiles whose posts lie this close to the lattice are on it [cells]; our choice.
 ALIGNED_CELLS: Final = 1e-3
 #: Cells whose sizes differ by less are equally fine [1]; our choice: the scale of a
@@ -195,15 +198,14 @@ def _cell_of(raster: Raster) -> tuple[float, float]:
             f"({raster.crs.crs_name}). Check its CRS and its place."
         )
         raise DemError(msg)
-    try:
-        here, down, along = (
-            Point(lat_deg=float(a), lon_deg=within_half_turn(float(b)))
-            for a, b in zip(lat, lon, strict=True)
-        )
-        cell = (geodesic_line(here, down).length_m, geodesic_line(here, along).length_m)
-    except InputError as error:
+    here, down, along = (
+        Point(lat_deg=float(a), lon_deg=within_half_turn(float(b)))
+        for a, b in zip(lat, lon, strict=True)
+    )
+    cell = (geodesic_line(here, down).length_m, geodesic_line(here, along).length_m)
+    if min(cell) < LEAST_CELL_M:
         msg = f'"{raster.path.name}" has cells of no size on the ground; check its CRS.'
-        raise DemError(msg) from error
+        raise DemError(msg)
     return cell
 
 
