@@ -59,8 +59,8 @@ def test_a_point_inside_passes(box: Terrain) -> None:
 def test_a_point_outside_is_told_what_the_model_covers(box: Terrain) -> None:
     # the outermost posts are half a cell, 0.005 degrees, inside the edges
     assert refusal(box, (12.5, 20.5)) == (
-        "--to: 12.50000, 20.50000 lies outside the DEM, which covers 10.005 to 10.995 "
-        "N, 20.005 to 20.995 E. Check sign and order, or add files."
+        "--to: 12.50000, 20.50000 lies outside the DEM, which covers 10.005 N to "
+        "10.995 N, 20.005 E to 20.995 E. Check sign and order, or add files."
     )
 
 
@@ -234,3 +234,12 @@ def test_a_long_tropical_path_asks_0_6_whatever_the_obstruction() -> None:
         long = named_rule_set("p530-tropical", length_m=31e3, isolated=isolated)
         assert long.criteria[1].f1_fraction == 0.6
         assert long.notes == ()
+
+
+def test_a_model_in_the_south_west_is_told_with_letters(tmp_path: Path) -> None:
+    transform = (0.01, 0.0, -72.0, 0.0, -0.01, -10.0)
+    file = terrain.write_geotiff(
+        tmp_path / "south.tif", np.full((100, 100), 5.0), transform, "EPSG:4326"
+    )
+    with pytest.raises(OutsideDemError, match=r"10\.995 S to 10\.005 S, 71\.995 W to"):
+        check_inside(open_terrain(file), station((0.0, 0.0), agl_m=2.0), role="from")

@@ -26,9 +26,9 @@ def check_inside(terrain: Terrain, station: Station, *, role: str) -> None:
     point = station.point
     if fits_exchanged(terrain, point):
         msg = (
-            f"--{role}: {point.lat_deg:g}, {point.lon_deg:g} lies outside the DEM. "
+            f"--{role}: {point.lat_deg:.9g}, {point.lon_deg:.9g} lies outside the DEM. "
             "With latitude and longitude exchanged the point fits: "
-            f'--{role} "{point.lon_deg:g},{point.lat_deg:g}".'
+            f'--{role} "{point.lon_deg:.9g},{point.lat_deg:.9g}".'
         )
         raise OutsideDemError(msg)
     msg = (
@@ -62,4 +62,10 @@ def _named(station: Station) -> str:
 def _outline_text(terrain: Terrain) -> str:
     """The box of latitude and longitude that the files cover, in words."""
     south, west, north, east = terrain.outline_deg()
-    return f"{south:.3f} to {north:.3f} N, {west:.3f} to {east:.3f} E"
+    across = f"{_lettered(west, 'EW')} to {_lettered(east, 'EW')}"
+    return f"{_lettered(south, 'NS')} to {_lettered(north, 'NS')}, {across}"
+
+
+def _lettered(value_deg: float, letters: str) -> str:
+    """Degrees with the letter of their side instead of a sign."""
+    return f"{abs(value_deg):.3f} {letters[value_deg < 0.0]}"
