@@ -148,6 +148,7 @@ def _files_of(path: Path) -> list[Path]:
         return files
     if path.exists() or not any(c in str(path) for c in PATTERN_CHARS):
         return [path]
+    # Path.glob takes no absolute pattern, which is what people type
     files = sorted(Path(p) for p in glob.glob(str(path)))  # noqa: PTH207
     if not files:
         msg = f'No file matches "{path}".'

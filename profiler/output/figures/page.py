@@ -202,6 +202,7 @@ def renderer_of(figure: Figure) -> Any:
     canvas = figure.canvas
     if not isinstance(canvas, FigureCanvasAgg):
         canvas = FigureCanvasAgg(figure)
+    # the plotting library states no types for this call, nor for the ruler below
     return canvas.get_renderer()  # type: ignore[no-untyped-call]
 
 

@@ -119,9 +119,8 @@ def _places(
     nodes = [_some(axis) if is_even else np.sort(axis) for axis in (east, north)]
     x, y = np.meshgrid(*nodes)
     found = plane.to_wgs84(x.ravel(), y.ravel())
-    return tuple(  # type: ignore[return-value]
-        _between(nodes, value.reshape(x.shape), east, north) for value in found
-    )
+    lat, lon = (_between(nodes, v.reshape(x.shape), east, north) for v in found)
+    return lat, lon
 
 
 def _some(axis: FloatArray) -> FloatArray:

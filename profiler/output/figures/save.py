@@ -83,6 +83,7 @@ def _write_png(figure: Figure, out: BinaryIO, dpi: float) -> None:
         canvas = FigureCanvasAgg(figure)  # the page's own has measured its text
     try:
         figure.set_dpi(dpi)
+        # the plotting library states no types for these two calls
         canvas.draw()  # type: ignore[no-untyped-call]
         pixels = np.asarray(canvas.buffer_rgba())  # type: ignore[no-untyped-call]
         out.write(png_bytes(pixels[:, :, :3], dpi))
